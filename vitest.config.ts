@@ -1,0 +1,33 @@
+import { fileURLToPath } from 'node:url';
+import { defineConfig } from 'vitest/config';
+
+const root = fileURLToPath(new URL('.', import.meta.url));
+
+// `unit` needs nothing running; `db` gets a throwaway MariaDB and the fakes from its global setup.
+export default defineConfig({
+  resolve: {
+    alias: { '@': root, 'server-only': fileURLToPath(new URL('tests/empty.ts', import.meta.url)) },
+  },
+  test: {
+    testTimeout: 60_000,
+    projects: [
+      {
+        extends: true,
+        test: {
+          name: 'unit',
+          include: ['tests/**/*.test.ts', 'tests/**/*.test.tsx'],
+          exclude: ['tests/db/**', 'tests/e2e/**'],
+        },
+      },
+      {
+        extends: true,
+        test: {
+          name: 'db',
+          include: ['tests/db/**/*.test.ts'],
+          globalSetup: ['tests/db/setup.ts'],
+          fileParallelism: false,
+        },
+      },
+    ],
+  },
+});
