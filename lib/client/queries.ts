@@ -15,7 +15,7 @@ import type {
   UnitRow,
 } from '@/lib/shared/api';
 import { call } from './api';
-import { unitsPath } from './unitsPath';
+import { unitsPath } from './units-path';
 
 export interface People {
   members: MemberRow[];

@@ -1,6 +1,6 @@
 import { expect, test } from 'vitest';
-import { searchOf, unitQueryOf, unitsPath } from '@/lib/client/unitsPath';
-import { withShot } from '@/lib/client/useRunEvents';
+import { searchOf, unitQueryOf, unitsPath } from '@/lib/client/units-path';
+import { withShot } from '@/lib/client/use-run-events';
 import type { RunDetail, ShotRow } from '@/lib/shared/api';
 
 test('a list’s address holds only what differs from the defaults, and reads back the same', () => {

@@ -2,7 +2,7 @@
 
 import { useEffect, useState, useSyncExternalStore } from 'react';
 import type { ShotRow } from '@/lib/shared/api';
-import { uploadStepsFor } from './uploadSteps';
+import { uploadStepsFor } from './upload-steps';
 import { type Upload, UploadQueue } from './uploads';
 
 const none: readonly Upload[] = [];
