@@ -26,11 +26,15 @@ export async function up({ context: q }: Step): Promise<void> {
       leasedBy: optional(text(80)),
       leaseUntil: optional(time),
       error: optional(longText),
-      openKey: optional(text(80)),
+      pendingKey: optional(text(80)),
       createdAt: time,
       settledAt: optional(time),
     },
-    [{ fields: ['openKey'], unique: true }, { fields: ['state', 'runAfter'] }],
+    [
+      { fields: ['pendingKey'], unique: true },
+      { fields: ['kind', 'state', 'runAfter'] },
+      { fields: ['kind', 'state', 'leaseUntil'] },
+    ],
   );
   await createTable(
     q,

@@ -33,8 +33,8 @@ export class Job extends Model<InferAttributes<Job>, InferCreationAttributes<Job
   declare leasedBy: CreationOptional<string | null>;
   declare leaseUntil: CreationOptional<Date | null>;
   declare error: CreationOptional<string | null>;
-  /** kind:subject until the job is settled, then null: its unique index keeps one such job open at a time. */
-  declare openKey: string | null;
+  /** kind:subject until the job is claimed, then null: its unique index lets one such job wait at a time. */
+  declare pendingKey: string | null;
   declare createdAt: CreationOptional<Date>;
   declare settledAt: CreationOptional<Date | null>;
 }
@@ -83,7 +83,7 @@ export function defineMachinery(sequelize: Sequelize) {
         leasedBy: optionalText(80),
         leaseUntil: optionalTime(),
         error: optionalLongText(),
-        openKey: optionalText(80),
+        pendingKey: optionalText(80),
         createdAt: now(),
         settledAt: optionalTime(),
       },
