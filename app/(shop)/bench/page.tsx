@@ -4,7 +4,7 @@ import { PageHead } from '@/components/ui/panel';
 import { UnitList } from '@/components/units/unit-list';
 import { searchOf, unitQueryOf } from '@/lib/client/units-path';
 import { requireActor } from '@/lib/server/session';
-import { stateCounts, listUnits } from '@/lib/server/units';
+import { listUnits, stateCounts } from '@/lib/server/units';
 
 export const metadata: Metadata = { title: 'Bench' };
 
