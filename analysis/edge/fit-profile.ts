@@ -1,0 +1,218 @@
+import { fastNormalCdf, normalDensity } from '../numeric/normal.ts';
+import { solveSpd } from '../numeric/spd.ts';
+import { binsPerPixel, type Profile } from './trace-edges.ts';
+
+/**
+ * A line-spread function as a sum of Gaussians and their first derivatives, fitted to one or more edge-spread functions.
+ * Finite differences, a window and a DFT would measure the same; the fit keeps their biases out (no derivative correction, no
+ * window, no uneven phases to cut off) and lets a blurred or noisy edge say less about the frequencies it holds no light at.
+ */
+export interface ProfileFit {
+  /** Deviations of the Gaussians, px. */
+  readonly widths: readonly number[];
+  /** Deviations of the derivatives of Gaussians, px: what makes the spread lopsided. */
+  readonly skewWidths: readonly number[];
+  /** One for each width, then one for each skew width. */
+  readonly coefficients: Float64Array;
+  /** Row-major covariance of the coefficients. */
+  readonly covariance: Float64Array;
+  /** Noise of a single pixel over the step. */
+  readonly noise: number;
+}
+
+/** Widths over the edge's own, a little finer than a factor √2 apart; the wide ones carry the halo of sharpening. */
+const ladder = [0.5, 0.72, 1, 1.4, 2, 2.9, 4.2, 6];
+const skewLadder = [0.72, 1.4];
+/** How far a coefficient may stray before data is seen. Wide enough for strong sharpening (amount 1.5 and more is reached). */
+const coefficientSpread = 1;
+const skewSpread = 0.3;
+/** Change of light over ten pixels that uneven lighting may cause. */
+const slopeSpread = 0.05;
+/** Below this, rounding to codes rules and the noise estimate has no meaning. */
+const leastNoise = 2e-4;
+
+/** @returns null when the profiles hold too little to fit. */
+export function fitProfile(profiles: readonly Profile[], sigma: number): ProfileFit | null {
+  const widest = Math.max(2.2 * sigma, Math.min(3.6, shortestReach(profiles) / 2));
+  const widths = ladder.map((factor) => factor * sigma).filter((width) => width <= widest);
+  const skewWidths = skewLadder.map((factor) => factor * sigma);
+  const shared = widths.length + skewWidths.length;
+  const n = shared + 2 * profiles.length;
+  const system = assemble(profiles, sigma, widths, skewWidths);
+  if (system.rows < n + 12) return null;
+  let noise = 0.02;
+  let solved: Solution | null = null;
+  for (let pass = 0; pass < 3; pass++) {
+    solved = solve(system, n, widths.length, shared, noise);
+    if (!solved) return null;
+    noise = Math.max(leastNoise, Math.sqrt(solved.squares / (system.rows - 0.7 * n)));
+  }
+  if (!solved) return null;
+  const covariance = new Float64Array(shared * shared);
+  for (let i = 0; i < shared; i++)
+    for (let j = 0; j < shared; j++) covariance[i * shared + j] = solved.inverse[i * n + j]!;
+  const coefficients = solved.coefficients.slice(0, shared);
+  return { widths, skewWidths, coefficients, covariance, noise };
+}
+
+function shortestReach(profiles: readonly Profile[]): number {
+  let shortest = Number.POSITIVE_INFINITY;
+  for (const { distance } of profiles)
+    shortest = Math.min(shortest, -distance[0]!, distance[distance.length - 1]!);
+  return shortest;
+}
+
+interface System {
+  readonly normal: Float64Array;
+  readonly right: Float64Array;
+  /** Σ weight · value². */
+  readonly total: number;
+  readonly rows: number;
+}
+
+interface Solution {
+  readonly coefficients: Float64Array;
+  readonly inverse: Float64Array;
+  readonly squares: number;
+}
+
+/** Normal equations: shared spread, then a level and a slope for each profile. */
+function assemble(
+  profiles: readonly Profile[],
+  sigma: number,
+  widths: readonly number[],
+  skewWidths: readonly number[],
+): System {
+  const shared = widths.length + skewWidths.length;
+  const n = shared + 2 * profiles.length;
+  const normal = new Float64Array(n * n);
+  const right = new Float64Array(n);
+  const row = new Float64Array(n);
+  let total = 0;
+  let rows = 0;
+  profiles.forEach((profile, p) => {
+    const { distance, value, pixels, floor } = profile;
+    row.fill(0);
+    for (let i = 0; i < distance.length; i++) {
+      const d = distance[i]!;
+      let at = 0;
+      for (const width of widths) row[at++] = fastNormalCdf(d / width);
+      for (const width of skewWidths) row[at++] = (normalDensity(d / width) * sigma) / width;
+      row[shared + 2 * p] = 1;
+      row[shared + 2 * p + 1] = (d / 10) * (floor + fastNormalCdf(d / sigma));
+      accumulate(normal, right, row, value[i]!, pixels[i]!);
+      total += pixels[i]! * value[i]! ** 2;
+      rows++;
+    }
+  });
+  return { normal, right, total, rows };
+}
+
+function accumulate(
+  normal: Float64Array,
+  right: Float64Array,
+  row: Float64Array,
+  value: number,
+  weight: number,
+): void {
+  const n = row.length;
+  for (let j = 0; j < n; j++) {
+    const weighted = row[j]! * weight;
+    if (weighted === 0) continue;
+    right[j]! += weighted * value;
+    for (let k = 0; k <= j; k++) normal[j * n + k]! += weighted * row[k]!;
+  }
+}
+
+function solve(
+  system: System,
+  n: number,
+  gaussians: number,
+  shared: number,
+  noise: number,
+): Solution | null {
+  const precision = 1 / noise ** 2;
+  const inverse = system.normal.map((v) => v * precision);
+  const coefficients = system.right.map((v) => v * precision);
+  for (let j = 0; j < n; j++) inverse[j * n + j]! += priorPrecision(j, gaussians, shared);
+  const own = ladder.indexOf(1);
+  coefficients[own]! += priorPrecision(own, gaussians, shared);
+  if (!solveSpd(inverse, coefficients)) return null;
+  return { coefficients, inverse, squares: residualSquares(system, coefficients) };
+}
+
+function priorPrecision(index: number, gaussians: number, shared: number): number {
+  if (index < gaussians) return 1 / coefficientSpread ** 2;
+  if (index < shared) return 1 / skewSpread ** 2;
+  return (index - shared) % 2 === 0 ? 1 : 1 / slopeSpread ** 2;
+}
+
+/** Σ w (y − A c)² from the sums alone. */
+function residualSquares(system: System, c: Float64Array): number {
+  const n = c.length;
+  let sum = system.total;
+  for (let j = 0; j < n; j++) {
+    sum -= 2 * c[j]! * system.right[j]!;
+    for (let k = 0; k < n; k++)
+      sum += c[j]! * c[k]! * system.normal[j >= k ? j * n + k : k * n + j]!;
+  }
+  return Math.max(0, sum);
+}
+
+/** Modulus of the spread's Fourier transform at f cy/px, 1 at 0; with `gradient`, its derivatives by the coefficients. */
+export function responseAt(fit: ProfileFit, f: number, gradient?: Float64Array): number {
+  const { widths, skewWidths, coefficients } = fit;
+  const k = widths.length;
+  const sigma = skewWidths[0]! / skewLadder[0]!;
+  let even = 0;
+  let odd = 0;
+  let total = 0;
+  for (let i = 0; i < k; i++) {
+    const c = coefficients[i]!;
+    even += c * gaussian(widths[i]!, f);
+    total += c;
+  }
+  for (let i = 0; i < skewWidths.length; i++)
+    odd += coefficients[k + i]! * 2 * Math.PI * f * sigma * gaussian(skewWidths[i]!, f);
+  const modulus = Math.hypot(even, odd);
+  // The box of the bins, 1/8 px wide, has blurred what was fitted.
+  const bin = sinc(f / binsPerPixel);
+  const response = modulus / total / bin;
+  if (gradient) {
+    const unit = 1 / (Math.max(modulus, 1e-9) * total * bin);
+    for (let i = 0; i < k; i++)
+      gradient[i] = even * gaussian(widths[i]!, f) * unit - response / total;
+    for (let i = 0; i < skewWidths.length; i++)
+      gradient[k + i] = odd * 2 * Math.PI * f * sigma * gaussian(skewWidths[i]!, f) * unit;
+  }
+  return response;
+}
+
+/** Edge-spread function at a distance d px, 0 far to the dark side and 1 far to the light side. */
+export function spreadAt(fit: ProfileFit, d: number, gradient?: Float64Array): number {
+  const { widths, skewWidths, coefficients } = fit;
+  const k = widths.length;
+  const sigma = skewWidths[0]! / skewLadder[0]!;
+  let sum = 0;
+  let total = 0;
+  for (let i = 0; i < k; i++) {
+    sum += coefficients[i]! * fastNormalCdf(d / widths[i]!);
+    total += coefficients[i]!;
+  }
+  for (let i = 0; i < skewWidths.length; i++)
+    sum += (coefficients[k + i]! * normalDensity(d / skewWidths[i]!) * sigma) / skewWidths[i]!;
+  if (gradient) {
+    for (let i = 0; i < k; i++) gradient[i] = (fastNormalCdf(d / widths[i]!) - sum / total) / total;
+    for (let i = 0; i < skewWidths.length; i++)
+      gradient[k + i] = (normalDensity(d / skewWidths[i]!) * sigma) / skewWidths[i]! / total;
+  }
+  return sum / total;
+}
+
+function gaussian(width: number, f: number): number {
+  return Math.exp(-2 * (Math.PI * width * f) ** 2);
+}
+
+function sinc(x: number): number {
+  return x === 0 ? 1 : Math.sin(Math.PI * x) / (Math.PI * x);
+}
