@@ -122,3 +122,9 @@ export const signGradeSchema = z.strictObject({
   reason: optionalLine(1000),
 });
 export const withdrawSchema = z.strictObject({ reason: line('why the report is withdrawn', 500) });
+
+export const targetPrintSchema = z.object({
+  shape: z.enum(['4x3', '3x2']),
+  paper: z.enum(['A4', 'A3', 'A2', 'A1']),
+});
+export type TargetPrintQuery = z.output<typeof targetPrintSchema>;
