@@ -1,0 +1,4 @@
+import { route } from '@/lib/server/route';
+import { listSessions } from '@/lib/server/sessions';
+
+export const GET = route({ access: 'signed-in' }, ({ actor }) => listSessions(actor));
