@@ -18,6 +18,7 @@ export function placesFor(role: Role, counts: StateCounts): Place[] {
     { href: '/bench', label: 'Bench', count: sum(counts, ['on-the-bench', 'testing']) },
     { href: '/grading', label: 'Grading', count: counts['awaiting-grade'] },
     { href: '/published', label: 'Published', count: null },
+    { href: '/targets', label: 'Target', count: null },
     { href: '/settings', label: 'Settings', count: null },
   ];
   return places
