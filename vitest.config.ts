@@ -25,6 +25,7 @@ export default defineConfig({
           name: 'db',
           include: ['tests/db/**/*.test.ts'],
           globalSetup: ['tests/db/setup.ts'],
+          setupFiles: ['tests/db/environment.ts'],
           fileParallelism: false,
         },
       },

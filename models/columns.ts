@@ -5,6 +5,7 @@ import { newId } from './id';
 export const id = () => ({
   type: DataTypes.CHAR(26),
   primaryKey: true,
+  allowNull: false,
   defaultValue: () => newId(),
 });
 export const reference = () => ({ type: DataTypes.CHAR(26), allowNull: false });

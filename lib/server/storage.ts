@@ -37,13 +37,22 @@ function store(): S3Client {
  * that throws at its end keeps wrong bytes out.
  */
 export async function putStream(key: string, body: Readable, mediaType: string): Promise<void> {
+  let broken: unknown;
+  body.once('error', (error) => {
+    broken = error;
+  });
   const upload = new Upload({
     client: store(),
     params: { Bucket: env().S3_BUCKET, Key: key, Body: body, ContentType: mediaType },
     queueSize: 2,
     leavePartsOnError: false,
   });
-  await upload.done();
+  try {
+    await upload.done();
+  } catch (error) {
+    // The stream's own error says more than what became of the parts.
+    throw broken ?? error;
+  }
 }
 
 export async function putBytes(key: string, body: Uint8Array, mediaType: string): Promise<void> {

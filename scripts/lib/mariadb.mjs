@@ -117,6 +117,6 @@ async function whenReady(child, socket, password) {
   await root.query('CREATE DATABASE IF NOT EXISTS mendlight');
   await root.query(`CREATE USER IF NOT EXISTS app@127.0.0.1 IDENTIFIED BY '${password}'`);
   await root.query(`ALTER USER app@127.0.0.1 IDENTIFIED BY '${password}'`);
-  await root.query('GRANT ALL ON mendlight.* TO app@127.0.0.1');
+  await root.query('GRANT ALL ON `mendlight%`.* TO app@127.0.0.1');
   await root.end();
 }

@@ -1,0 +1,3 @@
+import { inject } from 'vitest';
+
+Object.assign(process.env, inject('environment'));
