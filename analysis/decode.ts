@@ -4,6 +4,7 @@ import { type ExifTags, readCapture, readColourSpace } from './capture.ts';
 import { MeasurementError } from './errors.ts';
 import { adobeRgbSpace, type ColourSpace, readProfile, srgbSpace } from './icc.ts';
 import type { Capture, Frame } from './image.ts';
+import { readBlockStep } from './jpeg-tables.ts';
 import type { Warning } from './result.ts';
 
 export type Format = 'jpeg' | 'png' | 'tiff' | 'webp' | 'avif';
@@ -47,8 +48,10 @@ export async function decode(bytes: Uint8Array): Promise<Decoded> {
     });
   }
   const pixels = await readPixels(bytes, maxCode, colour.convert);
+  const step = format === 'jpeg' ? readBlockStep(bytes) : null;
+  const blockStep = step ? { blockStep: step } : {};
   return {
-    frame: { ...pixels, maxCode, ...colour.space },
+    frame: { ...pixels, maxCode, ...colour.space, ...blockStep },
     capture: readCapture(tags),
     format,
     bytes: bytes.length,

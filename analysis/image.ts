@@ -10,6 +10,8 @@ export interface Frame {
   readonly toLinear: readonly [Float32Array, Float32Array, Float32Array];
   /** Row-major 3 × 3 from the file's linear primaries to linear sRGB (D65); null when they are sRGB's already. */
   readonly toSrgb: readonly number[] | null;
+  /** JPEG only: the steps to which compression rounds the mean of a flat 8 × 8 block, in codes of luma and of chroma. */
+  readonly blockStep?: { readonly luma: number; readonly chroma: number };
 }
 
 /** One plane of linear light, row-major: (row, col) is data[row * width + col]. */

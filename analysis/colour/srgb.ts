@@ -15,8 +15,8 @@ export function luminance(red: number, green: number, blue: number): number {
   return 0.2126 * red + 0.7152 * green + 0.0722 * blue;
 }
 
-/** Code level of a correctly exposed mid-tone: 461/1000 of full scale (ISO 12232, CIPA DC-004). */
-export const midToneCode = 0.461;
+/** Code level of a correctly exposed mid-tone, 461/1000 of full scale (ISO 12232, CIPA DC-004), which 8 bits round to 118. */
+export const midToneCode = 118 / 255;
 
 /** Reflectance of the mid grey that a correct exposure renders at `midToneCode` (ISO 12232). */
 export const midGrey = 0.18;

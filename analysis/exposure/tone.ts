@@ -1,0 +1,190 @@
+import type { DiscSample } from '../colour/disc-sample.ts';
+import { toLinearSrgb } from '../colour/frame-colour.ts';
+import { midGrey, midToneCode, toCode, toLinear } from '../colour/srgb.ts';
+import type { Frame } from '../image.ts';
+import type { Plots } from '../result.ts';
+import { type FitPoint, type LocalFit, localFit } from './local-fit.ts';
+import { monotoneCurve } from './monotone-curve.ts';
+
+/**
+ * The camera's tone response (opto-electronic conversion function, ISO 14524:2009), read from the twelve greys:
+ * which reflectance, in the light of the frame's centre, gives which code. Extrapolated straight in log–log beyond the greys.
+ */
+export interface ToneResponse {
+  /** Code of each channel → relative light, in units of reflectance; tables as long as the frame's. */
+  readonly toLight: readonly [Float32Array, Float32Array, Float32Array];
+  /** Green code 0…1 of full scale → relative light: for what is measured on green alone. */
+  codeToLight(code: number): number;
+  /** Luminance in the file's linear light → relative light. */
+  luminanceToLight(luminance: number): number;
+  /** Luminance in the file's linear light → relative light in stops, with its standard uncertainty. Null too far beyond the greys. */
+  lightStops(luminance: number): LocalFit | null;
+  /** Luminance of the darkest and of the lightest grey in use: between them nothing is extrapolated. */
+  readonly range: readonly [number, number];
+  /** Slope of log2 file luminance on log2 light within ±1.5 stops of mid grey, 1 is faithful, and its standard uncertainty. */
+  readonly contrast: number;
+  readonly contrastUncertainty: number;
+  /** Linear sRGB that an 18 % grey comes out at, and standard uncertainties in stops. */
+  readonly midGrey: readonly [number, number, number];
+  readonly midGreyStops: readonly [number, number, number];
+}
+
+/** Stops to each side that a local fit looks at. */
+const reach = 1.3;
+const fewestGreys = 4;
+/** How far beyond the last grey, in stops, light is still told. */
+const farthestBeyond = 1;
+/** Uncertainty that stays however many pixels: the greys' own shading, stops. Found by rendering. */
+const floorStops = 0.001;
+
+/**
+ * @param samples all discs; the greys among them that are unclipped are used
+ * @returns null with fewer than four usable greys
+ */
+export function measureTone(frame: Frame, samples: readonly DiscSample[]): ToneResponse | null {
+  const greys = usableGreys(samples);
+  if (greys.length < fewestGreys) return null;
+  const luminances = toPoints(greys, (s) => [s.luminance, s.luminanceUncertainty]);
+  const mid = [0, 1, 2].map((channel) => midGreyOf(frame, greys, channel));
+  const curve = responseCurve(luminances);
+  const channels = [0, 1, 2].map((channel) =>
+    responseCurve(toPoints(greys, (s) => [s.linear[channel]!, s.uncertainty[channel]!])),
+  );
+  const slope = contrastOf(greys);
+  if (!curve || !slope || mid.some((m) => !m) || channels.some((c) => !c)) return null;
+  const tables = channels.map((c, i) => frame.toLinear[i]!.map((linear) => c!(linear)));
+  const sorted = greys.map((s) => s.luminance).sort((a, b) => a - b);
+  const range = [sorted[0]!, sorted.at(-1)!] as const;
+  return {
+    toLight: tables as unknown as ToneResponse['toLight'],
+    codeToLight: (code) => tables[1]![Math.round(code * frame.maxCode)] ?? Number.NaN,
+    luminanceToLight: curve,
+    lightStops: (luminance) => stopsAt(luminances, range, luminance),
+    range,
+    contrast: slope.value,
+    contrastUncertainty: slope.uncertainty,
+    midGrey: mid.map((m) => 2 ** m!.value) as unknown as ToneResponse['midGrey'],
+    midGreyStops: mid.map((m) => m!.uncertainty) as unknown as ToneResponse['midGreyStops'],
+  };
+}
+
+/** The greys with their codes of full scale, for the tone curve's drawing. */
+export function plotTone(samples: readonly DiscSample[]): NonNullable<Plots['tone']> {
+  return samples.filter(isGrey).map(({ disc, luminance, clipped }) => ({
+    id: disc.id,
+    reflectance: disc.reflectance ?? 0,
+    code: toCode(Math.max(0, luminance)),
+    used: !clipped,
+  }));
+}
+
+export function isGrey({ disc }: DiscSample): boolean {
+  return disc.kind === 'grey' && disc.reflectance !== undefined;
+}
+
+/** Luminance of code 118 in linear light. */
+export const midToneLuminance = toLinear(midToneCode);
+
+function usableGreys(samples: readonly DiscSample[]): DiscSample[] {
+  return samples.filter((s) => isGrey(s) && !s.clipped && s.linear.every((value) => value > 0));
+}
+
+function light(sample: DiscSample): number {
+  return (sample.disc.reflectance ?? 0) * sample.light;
+}
+
+/** log2 of what came out against log2 of the light that went in. */
+function toPoints(
+  greys: readonly DiscSample[],
+  pick: (sample: DiscSample) => readonly [number, number],
+): FitPoint[] {
+  return greys.map((sample) => {
+    const [value, uncertainty] = pick(sample);
+    return {
+      x: Math.log2(value),
+      y: Math.log2(light(sample)),
+      sigma: Math.hypot(uncertainty / value / Math.LN2, floorStops),
+    };
+  });
+}
+
+/** Linear light of the file → relative light: smoothed at each grey, monotone between them. */
+function responseCurve(points: readonly FitPoint[]): ((linear: number) => number) | null {
+  const sorted = [...points].sort((a, b) => a.x - b.x);
+  const x: number[] = [];
+  const y: number[] = [];
+  for (const point of sorted) {
+    const fit = localFit(sorted, point.x, reach);
+    if (!fit) return null;
+    const rises = x.length === 0 || (point.x > x.at(-1)! + 1e-4 && fit.value > y.at(-1)! + 1e-4);
+    if (rises) {
+      x.push(point.x);
+      y.push(fit.value);
+    }
+  }
+  if (x.length < fewestGreys) return null;
+  const end = x.length - 1;
+  const lowSlope = (y[2]! - y[0]!) / (x[2]! - x[0]!);
+  const highSlope = (y[end]! - y[end - 2]!) / (x[end]! - x[end - 2]!);
+  const curve = monotoneCurve(x, y, lowSlope, highSlope);
+  return (linear) => (linear > 0 ? 2 ** curve(Math.log2(linear)) : 0);
+}
+
+function stopsAt(
+  points: readonly FitPoint[],
+  range: readonly [number, number],
+  luminance: number,
+): LocalFit | null {
+  if (!(luminance > 0)) return null;
+  const at = Math.log2(luminance);
+  const beyond = Math.max(0, Math.log2(range[0]) - at, at - Math.log2(range[1]));
+  if (beyond > farthestBeyond) return null;
+  const fit = localFit(points, at, reach);
+  // A parabola goes astray as the square of the distance; 0.1 per stop² is common practice, no source.
+  return fit && { ...fit, uncertainty: Math.hypot(fit.uncertainty, 0.1 * beyond ** 2) };
+}
+
+/** log2 of the linear sRGB channel that 18 % in even light comes out at. */
+function midGreyOf(frame: Frame, greys: readonly DiscSample[], channel: number): LocalFit | null {
+  const points = greys.map((sample) => {
+    const value = toLinearSrgb(frame, sample.linear)[channel]!;
+    const relative = sample.uncertainty[channel]! / sample.linear[channel]!;
+    return {
+      x: Math.log2(light(sample)),
+      y: Math.log2(value),
+      sigma: Math.hypot(relative / Math.LN2, floorStops),
+    };
+  });
+  if (points.some((p) => !Number.isFinite(p.y))) return null;
+  const at = Math.log2(midGrey);
+  const inReach = points.some((p) => p.x <= at + 0.5) && points.some((p) => p.x >= at - 0.5);
+  return inReach ? localFit(points, at, reach) : null;
+}
+
+/** Regression over ±1.5 stops; each grey stands for the stretch of the scale that lies nearest to it. */
+function contrastOf(greys: readonly DiscSample[]): { value: number; uncertainty: number } | null {
+  const points = greys
+    .map((s) => ({
+      x: Math.log2(light(s) / midGrey),
+      y: Math.log2(s.luminance),
+      sigma: s.luminanceUncertainty / s.luminance / Math.LN2,
+    }))
+    .filter(({ x }) => Math.abs(x) <= 1.5)
+    .sort((a, b) => a.x - b.x);
+  if (points.length < fewestGreys) return null;
+  const lengths = points.map(({ x }, i) => {
+    const from = i === 0 ? -1.5 : (points[i - 1]!.x + x) / 2;
+    const to = i === points.length - 1 ? 1.5 : (points[i + 1]!.x + x) / 2;
+    return (to - from) / 3;
+  });
+  const mean = (pick: (p: (typeof points)[number]) => number) =>
+    points.reduce((sum, p, i) => sum + lengths[i]! * pick(p), 0);
+  const meanX = mean((p) => p.x);
+  const meanY = mean((p) => p.y);
+  const xx = mean((p) => (p.x - meanX) ** 2);
+  const value = mean((p) => (p.x - meanX) * (p.y - meanY)) / xx;
+  const scatter = mean((p) => (p.y - meanY - value * (p.x - meanX)) ** 2);
+  const noise = mean((p) => p.sigma ** 2);
+  const variance = Math.max(scatter, noise) / (points.length - 2) / xx;
+  return { value, uncertainty: Math.sqrt(variance) };
+}
