@@ -34,6 +34,10 @@ const pauses = [1000, 4000];
 const passing = (error: unknown) =>
   error instanceof ApiError && (error.status === 0 || error.status >= 500 || error.status === 429);
 
+/** The file itself is the matter: sending it again would end the same. */
+const final = (error: unknown) =>
+  error instanceof ApiError && (error.status === 413 || error.status === 415);
+
 /** Sends many files, a few at a time. A file that fails leaves the others alone and can be tried again. */
 export class UploadQueue {
   private list: readonly Upload[] = [];
@@ -113,7 +117,7 @@ export class UploadQueue {
       this.added(shot);
     } catch (error) {
       if (this.abort.signal.aborted) return;
-      const stage = passing(error) ? 'failed' : 'refused';
+      const stage = final(error) ? 'refused' : 'failed';
       this.change(id, { stage, message: sentenceOf(error), sent: 0 });
     }
   }

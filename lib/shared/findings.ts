@@ -1,5 +1,7 @@
 import type { Metric } from '@/analysis/result';
 import type { Proposal, RunResult } from './api';
+import { numberText } from './numbers';
+import { placeWords } from './places';
 import type { RuleOutcome } from './report';
 
 /** A value as the findings read it, whether it comes from one shot or is the mean of a run. */
@@ -19,7 +21,6 @@ export interface Finding {
 }
 
 export const thin = '\u202f';
-const minus = '\u2212';
 
 export function readingsOfShot(metrics: readonly Metric[]): Reading[] {
   return metrics.map((m) => ({
@@ -44,9 +45,8 @@ function find(readings: readonly Reading[], name: string, zone: string | null = 
 }
 
 function signed(value: number, decimals: number): string {
-  const text = Math.abs(value).toFixed(decimals);
-  if (Number(text) === 0) return text;
-  return value < 0 ? `${minus}${text}` : `+${text}`;
+  const text = numberText(value, decimals);
+  return value > 0 && Number(text) !== 0 ? `+${text}` : text;
 }
 
 const wholeStops = ['', 'One stop', 'Two stops', 'Three stops'] as const;
@@ -79,12 +79,7 @@ export function exposureFinding(readings: readonly Reading[]): Finding | null {
   };
 }
 
-export const cornerWords: Record<string, string> = {
-  NW: 'upper left',
-  NE: 'upper right',
-  SW: 'lower left',
-  SE: 'lower right',
-};
+const cornerIds: readonly string[] = ['NW', 'NE', 'SW', 'SE'];
 
 interface Sharpness {
   id: string;
@@ -116,12 +111,12 @@ export function sharpnessFinding(readings: readonly Reading[]): Finding | null {
   const stations = stationSharpness(readings);
   const centre = stations.find((s) => s.id === 'C');
   const corners = stations
-    .filter((s) => cornerWords[s.id] !== undefined)
+    .filter((s) => cornerIds.includes(s.id))
     .sort((a, b) => a.mtf50 - b.mtf50);
   const worst = corners[0];
   if (!centre || !worst) return null;
   const loss = 1 - worst.mtf50 / centre.mtf50;
-  const where = cornerWords[worst.id] ?? worst.id;
+  const where = placeWords[worst.id] ?? worst.id;
   const others = mean(corners.slice(1).map((s) => s.mtf50));
   const otherLoss = 1 - others / centre.mtf50;
   const middle = `The middle resolves ${centre.mtf50.toFixed(3)}${thin}cycles per pixel.`;

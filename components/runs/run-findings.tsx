@@ -1,0 +1,98 @@
+import type { ReactNode } from 'react';
+import { AbPlane } from '@/components/pictures/ab-plane';
+import { placeName } from '@/components/pictures/draw';
+import { framePicture } from '@/components/pictures/frame-data';
+import { FrameMap } from '@/components/pictures/frame-map';
+import { Histogram } from '@/components/pictures/histogram';
+import { MtfCurves } from '@/components/pictures/mtf-curves';
+import {
+  colourPoints,
+  peersInTheMiddle,
+  tellingCurves,
+  withRunSharpness,
+} from '@/components/runs/run-pictures';
+import { Panel, PanelHead } from '@/components/ui/panel';
+import type { RunDetail, ShotDetail } from '@/lib/shared/api';
+import {
+  colourFinding,
+  exposureFinding,
+  type Finding,
+  fringeFinding,
+  readingsOfRun,
+  sharpnessFinding,
+} from '@/lib/shared/findings';
+import { GradeSoFar } from './grade-so-far';
+import { NumberList } from './number-list';
+
+/** The run's means as findings, drawn on the newest measured shot of the target. */
+export function RunFindings({ run, shot }: { run: RunDetail; shot: ShotDetail | null }) {
+  const readings = readingsOfRun(run.results);
+  const sharpness = sharpnessFinding(readings);
+  const analysis = shot?.analysis ?? null;
+  const stations = withRunSharpness(analysis?.plots.stations ?? [], readings);
+  const frame =
+    analysis && stations.length > 0
+      ? framePicture(stations, analysis, peersInTheMiddle(run.results))
+      : null;
+  const curves = tellingCurves(analysis?.plots.stations ?? []).map((curve) => ({
+    ...curve,
+    label: placeName(curve.id).toLowerCase(),
+  }));
+  const colours = analysis?.plots.colours;
+  return (
+    <>
+      <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1.25fr)_minmax(0,1fr)]">
+        <FindingPanel finding={sharpness} otherwise="Sharpness over the frame" detailed>
+          {frame ? <FrameMap frame={frame} /> : <NoPicture />}
+        </FindingPanel>
+        <div className="grid gap-3.5">
+          <FindingPanel finding={exposureFinding(readings)} otherwise="Exposure" detailed>
+            {analysis ? <Histogram bins={analysis.plots.histogram} /> : <NoPicture />}
+          </FindingPanel>
+          <GradeSoFar proposal={run.proposal} />
+        </div>
+      </div>
+      <div className="grid items-start gap-3.5 lg:grid-cols-2 2xl:grid-cols-3">
+        <FindingPanel finding={colourFinding(readings)} otherwise="Colours" detailed>
+          {colours?.length ? <AbPlane colours={colourPoints(colours)} /> : <NoPicture />}
+        </FindingPanel>
+        <FindingPanel finding={fringeFinding(readings)} otherwise="Edges" detailed>
+          {curves.length > 0 ? <MtfCurves curves={curves} /> : <NoPicture />}
+        </FindingPanel>
+        <Panel aria-label="Numbers" className="lg:max-2xl:col-span-2">
+          <PanelHead
+            title="Numbers"
+            aside={`${run.done} shots · ${run.peers.units} others of this model`}
+          />
+          {run.proposal ? <NumberList rules={run.proposal.rules} /> : <NoPicture />}
+        </Panel>
+      </div>
+    </>
+  );
+}
+
+function FindingPanel({
+  finding,
+  otherwise,
+  detailed = false,
+  children,
+}: {
+  finding: Finding | null;
+  otherwise: string;
+  detailed?: boolean;
+  children: ReactNode;
+}) {
+  return (
+    <Panel aria-label={otherwise}>
+      <PanelHead title={finding?.title ?? otherwise} className="mb-1" />
+      {detailed && finding?.detail ? (
+        <p className="mb-3 text-pretty text-ink-2">{finding.detail}</p>
+      ) : null}
+      {children}
+    </Panel>
+  );
+}
+
+function NoPicture() {
+  return <p className="text-ink-2">Appears with the first measured shot of the target.</p>;
+}

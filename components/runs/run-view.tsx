@@ -1,0 +1,66 @@
+'use client';
+
+import { useQueryClient } from '@tanstack/react-query';
+import Link from 'next/link';
+import { Tag } from '@/components/ui/chip';
+import { PageHead } from '@/components/ui/panel';
+import { useRun, useShot } from '@/lib/client/queries';
+import { useRunEvents, withShot } from '@/lib/client/use-run-events';
+import { useUploads } from '@/lib/client/use-uploads';
+import type { RunDetail, ShotDetail, ShotRow } from '@/lib/shared/api';
+import { DropZone, PickButton } from './drop-zone';
+import { HowToShoot } from './how-to-shoot';
+import { newestTarget } from './newest-target';
+import { RunFindings } from './run-findings';
+import { RunToolbar } from './run-toolbar';
+import { SendToGrading } from './send-to-grading';
+import { ShotStrip } from './shot-strip';
+import { UploadList } from './upload-list';
+
+/** A test run: pictures go in at the top, findings grow below while they are measured. */
+export function RunView({
+  first,
+  firstShot,
+  siblings,
+}: {
+  first: RunDetail;
+  firstShot: ShotDetail | null;
+  siblings: { id: string; title: string }[];
+}) {
+  const client = useQueryClient();
+  const poll = useRunEvents(first.id);
+  const run = useRun(first, poll);
+  const added = (shot: ShotRow) =>
+    client.setQueryData<RunDetail>(['run', run.id], (known) => known && withShot(known, shot));
+  const { uploads, busy, queue } = useUploads(run.id, added);
+  const shown = newestTarget(run.shotList);
+  const shot = useShot(shown?.id ?? null, firstShot ?? undefined).data ?? null;
+  const empty = run.shots === 0 && uploads.length === 0;
+  const pick = (files: File[]) => queue.add(files);
+  return (
+    <>
+      <PageHead
+        label={
+          <>
+            <Link href={`/units/${run.unit.tag}`}>
+              <Tag>{run.unit.tag}</Tag> {run.unit.maker} {run.unit.model}
+            </Link>{' '}
+            · {run.phase === 'before' ? 'before' : 'after'} the repair
+          </>
+        }
+        title={run.title}
+        actions={<SendToGrading run={run} waiting={run.shots > run.done + run.failed || busy} />}
+      />
+      <DropZone disabled={!run.mayUpload} onFiles={pick}>
+        {empty ? null : <RunToolbar run={run} siblings={siblings} pick={pick} />}
+        <UploadList uploads={uploads} busy={busy} queue={queue} />
+        {empty ? (
+          <HowToShoot action={run.mayUpload ? <PickButton primary onFiles={pick} /> : null} />
+        ) : (
+          <ShotStrip tag={run.unit.tag} runId={run.id} shots={run.shotList} />
+        )}
+      </DropZone>
+      {run.shots > 0 ? <RunFindings run={run} shot={shown ? shot : null} /> : null}
+    </>
+  );
+}
