@@ -48,10 +48,15 @@ export async function decode(bytes: Uint8Array): Promise<Decoded> {
     });
   }
   const pixels = await readPixels(bytes, maxCode, colour.convert);
-  const step = format === 'jpeg' ? readBlockStep(bytes) : null;
-  const blockStep = step ? { blockStep: step } : {};
+  const blockStep = format === 'jpeg' ? readBlockStep(bytes) : null;
   return {
-    frame: { ...pixels, maxCode, ...colour.space, ...blockStep },
+    frame: {
+      ...pixels,
+      maxCode,
+      ...colour.space,
+      ...(blockStep ? { blockStep } : {}),
+      chromaHalved: metadata.chromaSubsampling?.startsWith('4:2') ?? false,
+    },
     capture: readCapture(tags),
     format,
     bytes: bytes.length,

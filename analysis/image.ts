@@ -12,6 +12,8 @@ export interface Frame {
   readonly toSrgb: readonly number[] | null;
   /** JPEG only: the steps to which compression rounds the mean of a flat 8 × 8 block, in codes of luma and of chroma. */
   readonly blockStep?: { readonly luma: number; readonly chroma: number };
+  /** Colour was stored at half the resolution (4:2:0, 4:2:2). */
+  readonly chromaHalved?: boolean;
 }
 
 /** One plane of linear light, row-major: (row, col) is data[row * width + col]. */

@@ -1,0 +1,110 @@
+import { z } from 'zod';
+import type { Analysis, Metric } from '@/analysis/result';
+
+/** One line of the analyse command; its fields are promised to whoever reads it by machine. */
+const text = z.string().nullable();
+const number = z.number().nullable();
+const shapes = z.enum(['4x3', '3x2']);
+
+export const captureOutputSchema = z.strictObject({
+  make: text,
+  model: text,
+  serial: text,
+  exposureTime: number,
+  fNumber: number,
+  iso: number,
+  exposureBias: number,
+  focalLength: number,
+  takenAt: text,
+  program: text,
+});
+
+export const metricOutputSchema = z.strictObject({
+  name: z.string(),
+  zone: z.string().optional(),
+  edge: z.enum(['vertical', 'horizontal']).optional(),
+  value: z.number(),
+  unit: z.string(),
+  uncertainty: z.number().min(0),
+  tangential: z.number().optional(),
+  lwph: z.number().optional(),
+});
+
+export const analysisOutputSchema = z.strictObject({
+  file: z.string(),
+  kind: z.enum(['target', 'grey', 'flat', 'dark', 'ladder', 'lag', 'scene']),
+  width: z.int(),
+  height: z.int(),
+  capture: captureOutputSchema,
+  registration: z
+    .strictObject({
+      target: shapes,
+      residual: z.number().min(0),
+      rotation: z.number().min(-180).max(180),
+      coverage: z.number().min(0).max(1),
+      rings: z.record(z.string(), z.tuple([z.number(), z.number()])),
+    })
+    .optional(),
+  metrics: z.array(metricOutputSchema),
+  warnings: z.array(
+    z.strictObject({
+      code: z.string().regex(/^[a-z0-9]+(-[a-z0-9]+)*$/),
+      message: z.string(),
+      zone: z.string().optional(),
+    }),
+  ),
+  milliseconds: z.strictObject({
+    decode: z.number(),
+    register: z.number(),
+    measure: z.number(),
+    total: z.number(),
+  }),
+});
+export const failureOutputSchema = z.strictObject({
+  file: z.string(),
+  error: z.strictObject({ code: z.string(), message: z.string() }),
+});
+export type AnalysisOutput = z.infer<typeof analysisOutputSchema>;
+export type FailureOutput = z.infer<typeof failureOutputSchema>;
+
+/** The part of an analysis that the command prints: no drawings' data, numbers rounded to what they can mean. */
+export function toAnalysisOutput(file: string, analysis: Analysis): AnalysisOutput {
+  const { kind, width, height, capture, registration, warnings, milliseconds } = analysis;
+  const { flash: _flash, software: _software, ...rest } = capture;
+  return {
+    file,
+    kind,
+    width,
+    height,
+    capture: rest,
+    ...(registration ? { registration } : {}),
+    metrics: analysis.metrics.map(roundMetric),
+    warnings,
+    milliseconds: {
+      decode: roundTenth(milliseconds.decode),
+      register: roundTenth(milliseconds.register),
+      measure: roundTenth(milliseconds.measure),
+      total: roundTenth(milliseconds.total),
+    },
+  };
+}
+
+function roundMetric(metric: Metric): Metric {
+  const { value, uncertainty, tangential, lwph } = metric;
+  return {
+    ...metric,
+    value: roundSix(value),
+    uncertainty: roundSix(uncertainty),
+    ...(tangential === undefined ? {} : { tangential: roundSix(tangential) }),
+    ...(lwph === undefined ? {} : { lwph: roundSix(lwph) }),
+  };
+}
+
+/** Six significant digits: well below any uncertainty. */
+function roundSix(value: number): number {
+  return Number(value.toPrecision(6));
+}
+
+function roundTenth(value: number): number {
+  return Math.round(value * 10) / 10;
+}
