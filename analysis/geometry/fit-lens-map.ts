@@ -1,19 +1,19 @@
 import type { Point } from '../image.ts';
 import { leastSquares } from '../numeric/levenberg-marquardt.ts';
-import { type LensMap, planeToImage } from './lens-map.ts';
+import { halfDiagonal, type LensMap } from './lens-map.ts';
 
 /** A point of the plane and where it was seen. */
 export interface Correspondence {
   readonly plane: Point;
   readonly image: Point;
+  /** Unit vector in the image: only the distance along it counts, as for a point of a line. Default: both directions do. */
+  readonly normal?: Point;
   /** Where the plane point moves for one unit of `spread`, see FittedLensMap. Default nowhere. */
   readonly spreadAlong?: Point;
 }
 
 export interface FittedLensMap {
   readonly map: LensMap;
-  /** Distance from the model, px, one a correspondence. */
-  readonly distances: Float64Array;
   /**
    * How much larger the marks look than printed, as a share of `spreadAlong`: a tone curve taken wrongly shifts every edge towards
    * its dark or its light side and so grows or shrinks every mark about its own centre. 0 unless fitted.
@@ -26,9 +26,9 @@ export interface FittedLensMap {
 export interface FitOptions {
   /** Plane units that make about 1 in the fit: half the plane's extent. */
   readonly planeScale: number;
-  /** Expected error of a seen point, px: what the priors are weighed against. Default 1. */
+  /** Expected error of a seen point in a direction, px: what the priors are weighed against. Default 1. */
   readonly pointError?: number;
-  /** Rounds of Huber's re-weighting; 0 gives plain least squares. Default 4. */
+  /** Rounds of Huber's re-weighting; 0 gives plain least squares. Default 3. */
   readonly robustRounds?: number;
   /** Default false. */
   readonly fitSpread?: boolean;
@@ -38,7 +38,7 @@ export interface FitOptions {
 // twice (common practice for photographic lenses, no source); k2 and k3 are smaller, as a converging series asks.
 const priorDeviations = { perspective: 0.3, radial: [0.2, 0.06, 0.03], spread: 0.1 };
 const huber = 1.345; // 95 % efficient for normal errors: Huber, Robust Statistics (1981)
-const spreadIndex = 11;
+const spreadIndex = 11; // after eight of the homography and three of the distortion
 
 /**
  * Fits homography and radial distortion to correspondences by robust least squares.
@@ -49,40 +49,41 @@ export function fitLensMap(
   start: LensMap,
   options: FitOptions,
 ): FittedLensMap {
-  const { planeScale, pointError = 1, robustRounds = 4, fitSpread = false } = options;
-  const weights = new Float64Array(points.length).fill(1);
-  const mapOf = (p: ArrayLike<number>) => mapFromParameters(p, start, planeScale);
+  const { planeScale, pointError = 1, robustRounds = 3, fitSpread = false } = options;
+  const weights = new Float64Array(points.length).fill(1 / pointError);
   const priors = priorsOf(fitSpread);
-  const residuals = (p: Float64Array, out: Float64Array) => {
-    writeErrors(points, mapOf(p), p[spreadIndex] ?? 0, out);
+  const unit = halfDiagonal(start);
+  const n = spreadIndex + (fitSpread ? 1 : 0);
+  const residuals = (p: Float64Array, out: Float64Array, jacobian: Float64Array | null) => {
+    jacobian?.fill(0);
     for (let i = 0; i < points.length; i++) {
-      const scale = Math.sqrt(weights[i]!) / pointError;
-      out[2 * i]! *= scale;
-      out[2 * i + 1]! *= scale;
+      writePoint(points[i]!, weights[i]!, i, p, out, jacobian, { start, unit, planeScale });
     }
-    priors.forEach(({ index, deviation }, i) => {
-      out[2 * points.length + i] = p[index]! / deviation;
+    priors.forEach(({ index, deviation }, k) => {
+      const i = 2 * points.length + k;
+      out[i] = p[index]! / deviation;
+      if (jacobian) jacobian[i * n + index] = 1 / deviation;
     });
   };
-  const first = parametersOf(start, planeScale, fitSpread);
-  const steps = new Float64Array(first.length).fill(1e-6);
   const count = 2 * points.length + priors.length;
-  let solution = leastSquares(residuals, first, count, { steps });
-  let distances = distancesOf(points, mapOf(solution.parameters), solution.parameters);
+  const errors = new Float64Array(count);
+  let solution = leastSquares(residuals, parametersOf(start, planeScale, n), count);
   for (let round = 0; round < robustRounds; round++) {
-    reweigh(weights, distances);
-    solution = leastSquares(residuals, solution.parameters, count, { steps, iterations: 6 });
-    distances = distancesOf(points, mapOf(solution.parameters), solution.parameters);
+    weights.fill(1);
+    residuals(solution.parameters, errors, null);
+    reweigh(weights, errors, points, pointError);
+    solution = leastSquares(residuals, solution.parameters, count, { iterations: 5 });
   }
   const { parameters, covariance } = solution;
-  const variance = varianceFactor(weights, distances, pointError, first.length);
+  residuals(parameters, errors, null);
+  const variance = varianceFactor(errors, points, n);
+  const mapOf = (p: ArrayLike<number>) => mapFromParameters(p, start, planeScale);
   return {
     map: mapOf(parameters),
-    distances,
     spread: parameters[spreadIndex] ?? 0,
     uncertaintyOf(quantity) {
       if (!covariance) throw new RangeError('the points do not determine the map');
-      const gradient = gradientOf((p) => quantity(mapOf(p)), parameters, steps);
+      const gradient = gradientOf((p) => quantity(mapOf(p)), parameters);
       return Math.sqrt(variance * quadraticForm(covariance, gradient));
     },
   };
@@ -99,12 +100,12 @@ function priorsOf(fitSpread: boolean) {
   return priors;
 }
 
-function parametersOf(map: LensMap, planeScale: number, fitSpread: boolean): number[] {
+function parametersOf(map: LensMap, planeScale: number, n: number): Float64Array {
+  const parameters = new Float64Array(n);
   const h = map.homography;
-  const scaled = [0, 1, 2, 3, 4, 5, 6, 7].map(
-    (i) => (h[i]! / h[8]!) * (i % 3 === 2 ? 1 : planeScale),
-  );
-  return [...scaled, ...map.radial, ...(fitSpread ? [0] : [])];
+  for (let i = 0; i < 8; i++) parameters[i] = (h[i]! / h[8]!) * (i % 3 === 2 ? 1 : planeScale);
+  parameters.set(map.radial, 8);
+  return parameters;
 }
 
 function mapFromParameters(p: ArrayLike<number>, frame: LensMap, planeScale: number): LensMap {
@@ -115,65 +116,115 @@ function mapFromParameters(p: ArrayLike<number>, frame: LensMap, planeScale: num
   return { width, height, homography, radial: [p[8]!, p[9]!, p[10]!] };
 }
 
-function writeErrors(
-  points: readonly Correspondence[],
-  map: LensMap,
-  spread: number,
+interface Scaling {
+  readonly start: LensMap;
+  readonly unit: number;
+  readonly planeScale: number;
+}
+
+/** The two residuals of a point, model less seen (of a line's point the second is 0), and their derivatives. */
+function writePoint(
+  point: Correspondence,
+  weight: number,
+  i: number,
+  p: Float64Array,
   out: Float64Array,
+  jacobian: Float64Array | null,
+  { start, unit, planeScale }: Scaling,
 ): void {
-  for (let i = 0; i < points.length; i++) {
-    const { plane, image, spreadAlong } = points[i]!;
-    const x = plane.x + spread * (spreadAlong?.x ?? 0);
-    const y = plane.y + spread * (spreadAlong?.y ?? 0);
-    const model = planeToImage(map, x, y);
-    out[2 * i] = model.x - image.x;
-    out[2 * i + 1] = model.y - image.y;
+  const { plane, image, normal, spreadAlong } = point;
+  const spread = p[spreadIndex] ?? 0;
+  const x = (plane.x + spread * (spreadAlong?.x ?? 0)) / planeScale;
+  const y = (plane.y + spread * (spreadAlong?.y ?? 0)) / planeScale;
+  const w = p[6]! * x + p[7]! * y + 1;
+  const a = (p[0]! * x + p[1]! * y + p[2]!) / w;
+  const b = (p[3]! * x + p[4]! * y + p[5]!) / w;
+  const r2 = a * a + b * b;
+  const factor = 1 + r2 * (p[8]! + r2 * (p[9]! + r2 * p[10]!));
+  const errorX = start.width / 2 + unit * a * factor - image.x;
+  const errorY = start.height / 2 + unit * b * factor - image.y;
+  // Two directions in the image that count: both axes, or the normal alone.
+  const nx = (normal?.x ?? 1) * weight;
+  const ny = (normal?.y ?? 0) * weight;
+  const my = normal ? 0 : weight;
+  out[2 * i] = nx * errorX + ny * errorY;
+  out[2 * i + 1] = my * errorY;
+  if (!jacobian) return;
+  const slope = 2 * (p[8]! + r2 * (2 * p[9]! + r2 * 3 * p[10]!));
+  const aa = (unit * (factor + slope * a * a)) / w;
+  const ab = (unit * slope * a * b) / w;
+  const bb = (unit * (factor + slope * b * b)) / w;
+  const n = p.length;
+  for (let direction = 0; direction < 2; direction++) {
+    const dx = direction === 0 ? nx : 0;
+    const dy = direction === 0 ? ny : my;
+    const da = dx * aa + dy * ab;
+    const db = dx * ab + dy * bb;
+    const at = (2 * i + direction) * n;
+    const across = -(da * a + db * b);
+    jacobian[at] = da * x;
+    jacobian[at + 1] = da * y;
+    jacobian[at + 2] = da;
+    jacobian[at + 3] = db * x;
+    jacobian[at + 4] = db * y;
+    jacobian[at + 5] = db;
+    jacobian[at + 6] = across * x;
+    jacobian[at + 7] = across * y;
+    const radial = unit * (dx * a + dy * b) * r2;
+    jacobian[at + 8] = radial;
+    jacobian[at + 9] = radial * r2;
+    jacobian[at + 10] = radial * r2 * r2;
+    if (n <= spreadIndex || !spreadAlong) continue;
+    const alongA = p[0]! * spreadAlong.x + p[1]! * spreadAlong.y;
+    const alongB = p[3]! * spreadAlong.x + p[4]! * spreadAlong.y;
+    const alongW = p[6]! * spreadAlong.x + p[7]! * spreadAlong.y;
+    jacobian[at + spreadIndex] = (da * alongA + db * alongB + across * alongW) / planeScale;
   }
 }
 
-function distancesOf(
+/** Huber's weights, by the error of one direction as the median over all points shows it. */
+function reweigh(
+  weights: Float64Array,
+  errors: Float64Array,
   points: readonly Correspondence[],
-  map: LensMap,
-  parameters: ArrayLike<number>,
-): Float64Array {
-  const errors = new Float64Array(2 * points.length);
-  writeErrors(points, map, parameters[spreadIndex] ?? 0, errors);
-  return Float64Array.from(points, (_, i) => Math.hypot(errors[2 * i]!, errors[2 * i + 1]!));
-}
-
-/** Huber's weights; the scale is the median distance over 1.1774, the median of a Rayleigh distribution. */
-function reweigh(weights: Float64Array, distances: Float64Array): void {
-  const median = Float64Array.from(distances).sort()[distances.length >> 1] ?? 0;
-  const limit = Math.max((huber * Math.SQRT2 * median) / 1.1774, 1e-9);
-  for (let i = 0; i < weights.length; i++) {
-    weights[i] = distances[i]! <= limit ? 1 : limit / distances[i]!;
-  }
+  pointError: number,
+): void {
+  // Medians of |error| in one direction and of the distance in two, for deviation 1: normal and Rayleigh distributions.
+  const scaled = points.map(
+    ({ normal }, i) => Math.hypot(errors[2 * i]!, errors[2 * i + 1]!) / (normal ? 0.6745 : 1.1774),
+  );
+  const deviation = scaled.toSorted((p, q) => p - q)[points.length >> 1]!;
+  points.forEach(({ normal }, i) => {
+    const distance = Math.hypot(errors[2 * i]!, errors[2 * i + 1]!);
+    const limit = Math.max(huber * deviation * (normal ? 1 : Math.SQRT2), 1e-9);
+    weights[i] = (distance <= limit ? 1 : Math.sqrt(limit / distance)) / pointError;
+  });
 }
 
 function varianceFactor(
-  weights: Float64Array,
-  distances: Float64Array,
-  pointError: number,
+  errors: Float64Array,
+  points: readonly Correspondence[],
   parameterCount: number,
 ): number {
   let sum = 0;
-  for (let i = 0; i < weights.length; i++) sum += weights[i]! * (distances[i]! / pointError) ** 2;
-  const freedom = 2 * weights.length - parameterCount;
+  let count = 0;
+  for (let i = 0; i < points.length; i++) {
+    sum += errors[2 * i]! ** 2 + errors[2 * i + 1]! ** 2;
+    count += points[i]!.normal ? 1 : 2;
+  }
+  const freedom = count - parameterCount;
   // Too few points to judge their own scatter: the expected error stands.
   return freedom < 4 ? Math.max(1, sum) : sum / freedom;
 }
 
-function gradientOf(
-  quantity: (parameters: Float64Array) => number,
-  at: Float64Array,
-  steps: Float64Array,
-): number[] {
+function gradientOf(quantity: (parameters: Float64Array) => number, at: Float64Array): number[] {
+  const step = 1e-6;
   return Array.from(at, (value, p) => {
     const moved = Float64Array.from(at);
-    moved[p] = value + steps[p]!;
+    moved[p] = value + step;
     const above = quantity(moved);
-    moved[p] = value - steps[p]!;
-    return (above - quantity(moved)) / (2 * steps[p]!);
+    moved[p] = value - step;
+    return (above - quantity(moved)) / (2 * step);
   });
 }
 

@@ -1,28 +1,26 @@
-/** Two buffers of an image's size that box blurs write through, so that a stack of blurs allocates once. */
-export interface BlurBuffers {
-  readonly a: Float32Array;
-  readonly b: Float32Array;
+/** Deviation of the kernel of `doubleBoxBlur`. */
+export function deviationOf(size: number): number {
+  return Math.sqrt((size * size - 1) / 6);
 }
 
 /**
- * Three box filters of odd width `size` after one another: close to a Gaussian of deviation √((size² − 1)/4). The border repeats the
- * outermost pixels. Row-major.
+ * Two box filters of odd width `size` after one another, each way: a triangle, close to a Gaussian. The border repeats the outermost
+ * pixels. Row-major.
+ * @param buffer of the image's size, overwritten
  * @returns a new array of the same size
  */
-export function tripleBoxBlur(
+export function doubleBoxBlur(
   data: Float32Array,
   width: number,
   height: number,
   size: number,
-  buffers: BlurBuffers,
+  buffer: Float32Array,
 ): Float32Array {
   const out = new Float32Array(width * height);
-  blurRows(data, buffers.a, width, height, size);
-  blurRows(buffers.a, buffers.b, width, height, size);
-  blurRows(buffers.b, buffers.a, width, height, size);
-  blurColumns(buffers.a, buffers.b, width, height, size);
-  blurColumns(buffers.b, buffers.a, width, height, size);
-  blurColumns(buffers.a, out, width, height, size);
+  blurRows(data, buffer, width, height, size);
+  blurRows(buffer, out, width, height, size);
+  blurColumns(out, buffer, width, height, size);
+  blurColumns(buffer, out, width, height, size);
   return out;
 }
 

@@ -1,67 +1,72 @@
 import { invertMatrix, solveLinear } from './linear-solve.ts';
 
-/** Writes the residuals at `parameters` into `out`. */
-export type ResidualFunction = (parameters: Float64Array, out: Float64Array) => void;
+/**
+ * Writes the residuals at `parameters` and, where asked, their derivatives: the derivative of residual i by parameter p stands at
+ * jacobian[i · n + p].
+ */
+export type ResidualFunction = (
+  parameters: Float64Array,
+  residuals: Float64Array,
+  jacobian: Float64Array | null,
+) => void;
 
 export interface LeastSquaresOptions {
-  /** Steps of the central differences, one a parameter. */
-  readonly steps: ArrayLike<number>;
   /** Default 30. */
   readonly iterations?: number;
-  /** Stop once the sum of squares falls by less than this share of itself. Default 1e-10. */
+  /** Stop once the sum of squares falls by less than this share of itself. Default 1e-9. */
   readonly tolerance?: number;
 }
 
 export interface LeastSquaresResult {
   readonly parameters: Float64Array;
   readonly sumOfSquares: number;
-  /** (JᵀJ)⁻¹, row-major, or null when the residuals don't determine every parameter. */
+  /** (JᵀJ)⁻¹ at the solution, row-major, or null when the residuals don't determine every parameter. */
   readonly covariance: Float64Array | null;
 }
 
 /**
- * Least squares by Levenberg's and Marquardt's damping (Marquardt, J. SIAM 11 (1963) 431), Jacobian by central differences.
- * Residuals must be finite near the start; a step to where they aren't is taken back.
+ * Least squares by Levenberg's and Marquardt's damping (Marquardt, J. SIAM 11 (1963) 431).
+ * Residuals must be finite at the start; a step to where they aren't is taken back.
+ * @param count number of residuals
  */
 export function leastSquares(
   residuals: ResidualFunction,
   start: ArrayLike<number>,
   count: number,
-  options: LeastSquaresOptions,
+  options: LeastSquaresOptions = {},
 ): LeastSquaresResult {
-  const { steps, iterations = 30, tolerance = 1e-10 } = options;
+  const { iterations = 30, tolerance = 1e-9 } = options;
   const n = start.length;
   let parameters = Float64Array.from(start);
   const here = new Float64Array(count);
   const there = new Float64Array(count);
   const jacobian = new Float64Array(count * n);
-  residuals(parameters, here);
+  const normal = new Float64Array(n * n);
+  const gradient = new Float64Array(n);
+  residuals(parameters, here, jacobian);
+  normalEquations(jacobian, here, normal, gradient);
   let sum = sumOfSquares(here);
   let damping = 1e-3;
   for (let iteration = 0; iteration < iterations; iteration++) {
-    fillJacobian(residuals, parameters, steps, jacobian, count);
-    const { normal, gradient } = normalEquations(jacobian, here, n);
     let fall = 0;
-    for (let attempt = 0; attempt < 12 && fall <= 0; attempt++) {
+    for (let attempt = 0; attempt < 12; attempt++) {
       const trial = dampedStep(normal, gradient, parameters, damping);
-      if (trial) {
-        residuals(trial, there);
-        const trialSum = sumOfSquares(there);
-        if (trialSum <= sum) {
-          fall = (sum - trialSum) / (sum + 1e-300);
-          parameters = trial;
-          here.set(there);
-          sum = trialSum;
-          damping = Math.max(damping / 10, 1e-12);
-          break;
-        }
+      if (trial) residuals(trial, there, null);
+      const trialSum = trial ? sumOfSquares(there) : Number.POSITIVE_INFINITY;
+      if (trial && trialSum <= sum) {
+        fall = (sum - trialSum) / (sum + Number.MIN_VALUE);
+        parameters = trial;
+        sum = trialSum;
+        damping = Math.max(damping / 10, 1e-12);
+        break;
       }
       damping *= 8;
     }
+    if (fall === 0) break;
+    residuals(parameters, here, jacobian);
+    normalEquations(jacobian, here, normal, gradient);
     if (fall < tolerance) break;
   }
-  fillJacobian(residuals, parameters, steps, jacobian, count);
-  const { normal } = normalEquations(jacobian, here, n);
   return { parameters, sumOfSquares: sum, covariance: invertMatrix(normal, n) };
 }
 
@@ -71,44 +76,27 @@ function sumOfSquares(values: Float64Array): number {
   return Number.isFinite(sum) ? sum : Number.POSITIVE_INFINITY;
 }
 
-/** Column p of the Jacobian stands at [p · count …]. */
-function fillJacobian(
-  residuals: ResidualFunction,
-  parameters: Float64Array,
-  steps: ArrayLike<number>,
+/** JᵀJ and Jᵀr. */
+function normalEquations(
   jacobian: Float64Array,
-  count: number,
+  residuals: Float64Array,
+  normal: Float64Array,
+  gradient: Float64Array,
 ): void {
-  const moved = Float64Array.from(parameters);
-  const behind = new Float64Array(count);
-  for (let p = 0; p < parameters.length; p++) {
-    const step = steps[p]!;
-    const column = jacobian.subarray(p * count, (p + 1) * count);
-    moved[p] = parameters[p]! + step;
-    residuals(moved, column);
-    moved[p] = parameters[p]! - step;
-    residuals(moved, behind);
-    moved[p] = parameters[p]!;
-    for (let i = 0; i < count; i++) column[i] = (column[i]! - behind[i]!) / (2 * step);
-  }
-}
-
-function normalEquations(jacobian: Float64Array, residual: Float64Array, n: number) {
-  const count = residual.length;
-  const normal = new Float64Array(n * n);
-  const gradient = new Float64Array(n);
-  for (let p = 0; p < n; p++) {
-    for (let q = p; q < n; q++) {
-      let sum = 0;
-      for (let i = 0; i < count; i++) sum += jacobian[p * count + i]! * jacobian[q * count + i]!;
-      normal[p * n + q] = sum;
-      normal[q * n + p] = sum;
+  const n = gradient.length;
+  normal.fill(0);
+  gradient.fill(0);
+  for (let i = 0; i < residuals.length; i++) {
+    const row = i * n;
+    const residual = residuals[i]!;
+    for (let p = 0; p < n; p++) {
+      const derivative = jacobian[row + p]!;
+      if (derivative === 0) continue;
+      gradient[p]! += derivative * residual;
+      for (let q = 0; q <= p; q++) normal[p * n + q]! += derivative * jacobian[row + q]!;
     }
-    let sum = 0;
-    for (let i = 0; i < count; i++) sum += jacobian[p * count + i]! * residual[i]!;
-    gradient[p] = sum;
   }
-  return { normal, gradient };
+  for (let p = 0; p < n; p++) for (let q = 0; q < p; q++) normal[q * n + p] = normal[p * n + q]!;
 }
 
 function dampedStep(

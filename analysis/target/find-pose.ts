@@ -11,12 +11,16 @@ export interface Pose {
   readonly target: Target;
   readonly map: LensMap;
   readonly stationCount: number;
+  /** Root mean square distance of the stations from the model, target units. */
+  readonly misfit: number;
   /** Correlation of the discs' codes with the printed ones; 1 is perfect, and the target turned by 180° gives less than 0. */
   readonly discAgreement: number;
 }
 
 const guesses = 6; // a shape: the right one is the first but for clutter
+const leastStations = 5;
 const leastDiscs = 8;
+const fit = { planeScale: 450, pointError: 0.5, robustRounds: 1 };
 // Real targets give 0.9 and more, down to 23 dB and with one third of the discs out of the frame; chance pictures stay below 0.6.
 export const leastAgreement = 0.75;
 
@@ -24,20 +28,26 @@ export const leastAgreement = 0.75;
 export function findPose(
   plane: Plane,
   candidates: readonly StationCandidate[],
-  targets: readonly Target[],
+  shapes: readonly Target[],
 ): Pose | null {
+  const matches = shapes.flatMap((target) => matchStations(candidates, target, guesses));
+  matches.sort((p, q) => q.score - p.score);
   let best: Pose | null = null;
-  for (const target of targets) {
-    for (const match of matchStations(candidates, target, guesses)) {
-      const pose = poseFromMatch(plane, candidates, match);
-      if (pose && (!best || rank(pose) > rank(best))) best = pose;
-    }
+  for (const match of matches) {
+    const pose = poseFromMatch(plane, candidates, match);
+    if (pose && (!best || rank(pose) > rank(best))) best = pose;
+    if (best && isCertain(best)) break;
   }
   return best;
 }
 
 function rank(pose: Pose): number {
-  return pose.stationCount + 10 * pose.discAgreement;
+  return pose.stationCount + 10 * pose.discAgreement - pose.misfit;
+}
+
+/** So good that no other match can be better; of the wrong shape misfit is five units and more. */
+function isCertain(pose: Pose): boolean {
+  return pose.stationCount >= 9 && pose.discAgreement > 0.9 && pose.misfit < 2.5;
 }
 
 function poseFromMatch(
@@ -48,21 +58,35 @@ function poseFromMatch(
   const { target } = match;
   let map = startMap(plane, match);
   let assigned: ArrayLike<number> = match.assigned;
-  let count = 0;
-  for (const tolerance of [30, 14, 14]) {
+  for (const tolerance of [30, 14]) {
     const points = correspondences(candidates, assigned, target);
-    count = points.length;
-    if (count < 5) return null;
-    map = fitLensMap(points, map, { planeScale: target.height / 2, pointError: 0.5 }).map;
+    if (points.length < leastStations) return null;
+    map = fitLensMap(points, map, fit).map;
     assigned = reassign(candidates, map, target, tolerance);
   }
+  const points = correspondences(candidates, assigned, target);
+  if (points.length < leastStations) return null;
+  map = fitLensMap(points, map, fit).map;
   if (!isPlausible(map, target)) return null;
+  const misfit = misfitOf(map, points);
   const turned = turnHalf(map);
   const upright = discAgreement(plane, map, target);
   const upsideDown = discAgreement(plane, turned, target);
+  const shared = { target, stationCount: points.length, misfit };
   return upright >= upsideDown
-    ? { target, map, stationCount: count, discAgreement: upright }
-    : { target, map: turned, stationCount: count, discAgreement: upsideDown };
+    ? { ...shared, map, discAgreement: upright }
+    : { ...shared, map: turned, discAgreement: upsideDown };
+}
+
+/** Root mean square distance of the stations from the model, target units. */
+function misfitOf(map: LensMap, points: readonly { plane: Point; image: Point }[]): number {
+  let sum = 0;
+  for (const { plane, image } of points) {
+    const model = planeToImage(map, plane.x, plane.y);
+    const distance = Math.hypot(model.x - image.x, model.y - image.y);
+    sum += (distance / localScale(map, plane)) ** 2;
+  }
+  return Math.sqrt(sum / points.length);
 }
 
 function startMap(plane: Plane, match: StationMatch): LensMap {

@@ -1,5 +1,5 @@
 import type { Plane, Point } from '../image.ts';
-import { type BlurBuffers, tripleBoxBlur } from '../numeric/box-blur.ts';
+import { deviationOf, doubleBoxBlur } from '../numeric/box-blur.ts';
 import { samplePlane } from './sample.ts';
 
 /** Something that looks like a station: a dark square in a lighter round pad on a ground between the two. */
@@ -14,9 +14,12 @@ const squareSide = 68; // target units, as every length below
 const padRadius = 62;
 // A Gaussian's second derivative answers a disc most when its deviation is the radius over √2; the square's disc has the same area.
 const bestDeviation = squareSide / Math.sqrt(2 * Math.PI);
-// Widths of the stacked box blurs: marks from 0.08 to 0.5 pixels a unit, which holds the target from a third of the frame's height to
-// half as large again as the frame.
-const blurWidths = [3, 5, 7, 9, 13, 17, 23, 31];
+// Widths of the double box blurs, for the plane and for the plane halved: marks from 0.07 to 0.5 pixels a unit, which holds the target
+// from a third of the frame's height to half as large again as the frame.
+const blurWidths = [
+  [5, 7, 11],
+  [5, 7, 11, 17],
+];
 const leastAnswer = 0.03; // of the local mean; a station gives 0.08 and more, sensor noise less than 0.01
 const mostPeaks = 600;
 const rayCount = 32;
@@ -25,10 +28,23 @@ const rayCount = 32;
 export function findStations(plane: Plane): StationCandidate[] {
   const candidates: StationCandidate[] = [];
   for (const peak of findPeaks(plane)) {
+    if (!hasLighterRim(plane, peak)) continue;
     const found = measureSquare(plane, peak, peak.deviation / bestDeviation);
     if (found && !candidates.some((other) => areSame(found, other))) candidates.push(found);
   }
   return candidates;
+}
+
+/** A quick look: lighter than the middle all round at the pad's distance. */
+function hasLighterRim(plane: Plane, { x, y, deviation }: Peak): boolean {
+  const radius = (deviation / bestDeviation) * 50;
+  const inside = samplePlane(plane, x, y);
+  let lighter = 0;
+  for (let ray = 0; ray < rayCount; ray += 4) {
+    const value = samplePlane(plane, x + radius * cosines[ray]!, y + radius * sines[ray]!);
+    if (value > inside * 1.1) lighter++;
+  }
+  return lighter >= 7;
 }
 
 interface Peak extends Point {
@@ -38,34 +54,51 @@ interface Peak extends Point {
 
 /** Dark blobs: maxima of the difference of two blurs, strongest first. */
 function findPeaks(plane: Plane): Peak[] {
-  const { width, height, data } = plane;
-  const buffers: BlurBuffers = {
-    a: new Float32Array(width * height),
-    b: new Float32Array(width * height),
-  };
   const peaks: Peak[] = [];
-  let narrow = tripleBoxBlur(data, width, height, blurWidths[0]!, buffers);
-  for (let level = 1; level < blurWidths.length; level++) {
-    const wide = tripleBoxBlur(data, width, height, blurWidths[level]!, buffers);
-    const deviation = Math.sqrt(
-      deviationOf(blurWidths[level - 1]!) * deviationOf(blurWidths[level]!),
-    );
-    for (let i = 0; i < narrow.length; i++) narrow[i] = (wide[i]! - narrow[i]!) / (wide[i]! + 1e-3);
-    collectMaxima(narrow, width, height, deviation, peaks);
-    narrow = wide;
+  let octave = plane;
+  let pixel = 1;
+  for (const widths of blurWidths) {
+    collectPeaks(octave, widths, pixel, peaks);
+    octave = halve(octave);
+    pixel *= 2;
   }
   return peaks.sort((p, q) => q.answer - p.answer).slice(0, mostPeaks);
 }
 
-function deviationOf(boxWidth: number): number {
-  return Math.sqrt((boxWidth * boxWidth - 1) / 4);
+function collectPeaks(
+  { width, height, data }: Plane,
+  widths: readonly number[],
+  pixel: number,
+  peaks: Peak[],
+): void {
+  const buffer = new Float32Array(width * height);
+  let narrow = doubleBoxBlur(data, width, height, widths[0]!, buffer);
+  for (let level = 1; level < widths.length; level++) {
+    const wide = doubleBoxBlur(data, width, height, widths[level]!, buffer);
+    for (let i = 0; i < narrow.length; i++) narrow[i] = (wide[i]! - narrow[i]!) / (wide[i]! + 1e-3);
+    const deviation = Math.sqrt(deviationOf(widths[level - 1]!) * deviationOf(widths[level]!));
+    collectMaxima({ width, height, data: narrow }, deviation, pixel, peaks);
+    narrow = wide;
+  }
+}
+
+function halve({ width, height, data }: Plane): Plane {
+  const half = { width: width >> 1, height: height >> 1 };
+  const out = new Float32Array(half.width * half.height);
+  for (let row = 0; row < half.height; row++) {
+    let i = 2 * row * width;
+    for (let col = 0; col < half.width; col++, i += 2) {
+      out[row * half.width + col] =
+        (data[i]! + data[i + 1]! + data[i + width]! + data[i + width + 1]!) / 4;
+    }
+  }
+  return { ...half, data: out };
 }
 
 function collectMaxima(
-  answer: Float32Array,
-  width: number,
-  height: number,
+  { width, height, data: answer }: Plane,
   deviation: number,
+  pixel: number,
   peaks: Peak[],
 ): void {
   const reach = Math.max(1, Math.round(deviation / 2));
@@ -77,7 +110,12 @@ function collectMaxima(
       if (value < answer[i - 1]! || value <= answer[i + 1]!) continue;
       if (value < answer[i - width]! || value <= answer[i + width]!) continue;
       if (!isMaximum(answer, width, i, reach)) continue;
-      peaks.push({ x: col + 0.5, y: row + 0.5, deviation, answer: value });
+      peaks.push({
+        x: (col + 0.5) * pixel,
+        y: (row + 0.5) * pixel,
+        deviation: deviation * pixel,
+        answer: value,
+      });
     }
   }
 }

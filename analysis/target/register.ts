@@ -46,12 +46,10 @@ export function registerTarget(frame: Frame, options: RegisterOptions = {}): Reg
 
 /** Refines a rough map (good to some ten target units) to a registration. */
 export function registerFrom(frame: Frame, target: Target, rough: LensMap): Registration {
-  const wide = { reachUnits: 14, reachPixels: Number.POSITIVE_INFINITY, passes: 2 };
-  const narrow = { reachUnits: 14, reachPixels: 7, passes: 2 };
-  const first = refineCorners(frame, rough, target, wide);
+  const first = refineCorners(frame, rough, target, { passes: 2, mostLines: 24 });
   if (first.length < leastSquares) throw tooFewSquares(first.length, target);
   const coarse = fitTo(first, [], target, rough);
-  const stations = refineCorners(frame, coarse.map, target, narrow);
+  const stations = refineCorners(frame, coarse.map, target, { passes: 3, mostLines: 64 });
   if (stations.length < leastSquares) throw tooFewSquares(stations.length, target);
   const rings = refineRings(frame, coarse.map, target);
   const fitted = fitTo(stations, rings, target, coarse.map);
@@ -64,14 +62,7 @@ function fitTo(
   target: Target,
   start: LensMap,
 ): FittedLensMap {
-  const points: Correspondence[] = [];
-  for (const { id, printed, found } of stations) {
-    const centre = target.stations.find((station) => station.id === id)!;
-    printed.forEach((corner, i) => {
-      const spreadAlong = { x: corner.x - centre.x, y: corner.y - centre.y };
-      points.push({ plane: corner, image: found[i]!, spreadAlong });
-    });
-  }
+  const points: Correspondence[] = stations.flatMap(({ sidePoints }) => sidePoints);
   for (const { printed, found } of rings) points.push({ plane: printed, image: found });
   return fitLensMap(points, start, {
     planeScale: target.height / 2,
@@ -88,14 +79,15 @@ function registrationOf(
 ): Registration {
   const { map } = fitted;
   const inverse = inverseOf(map);
-  const good = stations.filter((_, s) => !isMisplaced(fitted.distances, s, stations.length));
+  const distances = cornerDistances(target, fitted, stations);
+  const good = stations.filter((_, s) => !isMisplaced(distances, s));
   const corners = new Map(good.map(({ id, found }) => [id, found]));
   const [a, , c] = lensMapJacobian(map, 0, 0);
   return {
     target,
     summary: {
       target: target.name,
-      residual: rootMeanSquare(fitted.distances.subarray(0, 4 * stations.length)),
+      residual: rootMeanSquare(distances.flat()),
       rotation: (Math.atan2(c, a) * 180) / Math.PI,
       coverage: polygonAreaInFrame(outline(map, target), frame) / (frame.width * frame.height),
       rings: Object.fromEntries(
@@ -116,11 +108,31 @@ function registrationOf(
   };
 }
 
+/** Of each station, how far its corners lie from the model, px. */
+function cornerDistances(
+  target: Target,
+  { map, spread }: FittedLensMap,
+  stations: readonly RefinedStation[],
+): number[][] {
+  return stations.map(({ id, printed, found }) => {
+    const centre = target.stations.find((station) => station.id === id)!;
+    return printed.map((corner, i) => {
+      const grown = 1 + spread;
+      const model = planeToImage(
+        map,
+        centre.x + grown * (corner.x - centre.x),
+        centre.y + grown * (corner.y - centre.y),
+      );
+      return Math.hypot(model.x - found[i]!.x, model.y - found[i]!.y);
+    });
+  });
+}
+
 /** A square whose corners lie far from where all the others put them: something lies on it. */
-function isMisplaced(distances: Float64Array, s: number, count: number): boolean {
-  const all = distances.slice(0, 4 * count).sort();
+function isMisplaced(distances: readonly number[][], s: number): boolean {
+  const all = distances.flat().sort((p, q) => p - q);
   const median = all[all.length >> 1]!;
-  return distances.subarray(4 * s, 4 * s + 4).some((distance) => distance > 2 + 8 * median);
+  return distances[s]!.some((distance) => distance > 2 + 8 * median);
 }
 
 /** Mean over the field's four corners of 100 (H′ − H)/H, H the image height without distortion. */
@@ -169,7 +181,7 @@ function enlargeMap(map: LensMap, frame: Frame, factor: number): LensMap {
   return { width, height, homography, radial: map.radial };
 }
 
-function rootMeanSquare(values: Float64Array): number {
+function rootMeanSquare(values: readonly number[]): number {
   return Math.sqrt(values.reduce((sum, value) => sum + value * value, 0) / values.length);
 }
 
