@@ -12,10 +12,11 @@ import {
   isWornOut,
   type JobKind,
   onEnqueue,
+  release,
 } from './queue';
 
 export interface Dispatcher {
-  /** Claims nothing new, and waits for the work in hand. */
+  /** Claims nothing new; work in hand is finished or given back, whichever is quicker. */
   stop(): Promise<void>;
 }
 
@@ -58,7 +59,7 @@ export function runLanes(lanes: Lane[], options: Options = defaults): Dispatcher
   const follow = async (lane: Lane) => {
     while (!stopping.signal.aborted) {
       const held = await nextJob(lane.kind, options.leaseMs);
-      if (held) await perform(held, lane.handler, options.leaseMs);
+      if (held) await perform(held, lane.handler, options.leaseMs, stopping.signal);
       else await sleep(lane.kind);
     }
   };
@@ -81,7 +82,12 @@ async function nextJob(kind: JobKind, leaseMs: number): Promise<Claim | null> {
   }
 }
 
-async function perform(held: Claim, handler: Handler, leaseMs: number): Promise<void> {
+async function perform(
+  held: Claim,
+  handler: Handler,
+  leaseMs: number,
+  stopping: AbortSignal,
+): Promise<void> {
   const lost = new AbortController();
   const heartbeat = setInterval(() => {
     extend(held, leaseMs).then(
@@ -91,13 +97,15 @@ async function perform(held: Claim, handler: Handler, leaseMs: number): Promise<
   }, leaseMs / 3);
   try {
     if (isWornOut(held)) throw new Error('Every process that worked on this job has died.');
-    const write = await handler.work(held.subjectId, lost.signal);
+    const write = await handler.work(held.subjectId, AbortSignal.any([lost.signal, stopping]));
     await db().sequelize.transaction(async (transaction) => {
       await complete(transaction, held);
       await write(transaction);
     });
   } catch (error) {
-    if (!lost.signal.aborted) await giveUp(held, handler, error);
+    if (lost.signal.aborted) return;
+    if (stopping.aborted) await release(held);
+    else await giveUp(held, handler, error);
   } finally {
     clearInterval(heartbeat);
   }

@@ -126,6 +126,14 @@ export async function giveBack(held: Claim, error: unknown): Promise<boolean> {
   return again;
 }
 
+/** Gives back a job that was not finished because the process ends; the attempt does not count. */
+export async function release(held: Claim): Promise<void> {
+  await db().Job.update(
+    { state: 'pending', attempts: held.attempts - 1, leaseUntil: null, leasedBy: null },
+    { where: mine(held) },
+  );
+}
+
 /** A job that killed its holder again and again is not tried for ever. */
 export function isWornOut(held: Claim): boolean {
   return held.attempts > mostAttempts;

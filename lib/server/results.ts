@@ -28,7 +28,11 @@ export const sampleKey = (name: string, zone: string | null, edge: string | null
 
 /** What a run's target photographs show, from the latest analysis of each. */
 export async function resultsOfRun(actor: Actor, runId: string): Promise<Samples> {
-  return samplesOf(await measurementsOf(actor, await analysisIds(actor, [runId])));
+  return resultsOfAnalyses(actor, await analysisIds(actor, [runId]));
+}
+
+export async function resultsOfAnalyses(actor: Actor, ids: string[]): Promise<Samples> {
+  return samplesOf(await measurementsOf(actor, ids));
 }
 
 /** Latest analyses of the target photographs of some runs. */

@@ -123,3 +123,15 @@ export interface RuleOutcome {
   effect: 'cap' | 'bar';
   peers: number[];
 }
+
+/** What anyone may read at a report's address: the frozen content, its bytes and hash, and the one live fact. */
+export interface PublicReport {
+  content: ReportContent;
+  /** Exactly the bytes that `sha256` is of. */
+  json: string;
+  sha256: string;
+  /** null: it stands. */
+  withdrawn: { at: string; reason: string } | null;
+  /** Every publication, oldest first. */
+  versions: { version: number; publishedAt: string; sha256: string }[];
+}
