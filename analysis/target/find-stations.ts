@@ -162,7 +162,7 @@ function traceOutline(plane: Plane, centre: Point, scale: number): Outline | nul
   const inside = samplePlane(plane, centre.x, centre.y);
   const step = Math.max(0.5, 3 * scale);
   const samples = Math.ceil((padRadius * scale) / step) + 1;
-  const values = new Float64Array(rayCount * samples);
+  const values = new Float32Array(rayCount * samples);
   const tops = new Float64Array(rayCount);
   for (let ray = 0; ray < rayCount; ray++) {
     const dx = cosines[ray]! * step;
@@ -184,7 +184,7 @@ function traceOutline(plane: Plane, centre: Point, scale: number): Outline | nul
 
 /** Distance at which each ray first rises through the level; a few rays may miss it and take their neighbours'. */
 function crossings(
-  values: Float64Array,
+  values: Float32Array,
   samples: number,
   step: number,
   level: number,

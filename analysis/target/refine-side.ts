@@ -25,12 +25,11 @@ const leastLines = 6;
 // (pad − square) / (pad + square) in linear light is 0.6 as printed; flare and a flat tone curve may halve it.
 const leastContrast = 0.2;
 const mostSamples = 48;
-// Half the first profile's length: edges up to two thirds of it away are caught.
-const reachUnits = 14;
 
 /** How much reading a side is worth. */
 export interface Effort {
-  /** Two find the side, a third settles it. */
+  /** Half the first profile's length, target units: edges up to two thirds of it away are caught. */
+  readonly reachUnits: number;
   readonly passes: number;
   readonly mostLines: number;
 }
@@ -45,7 +44,7 @@ export function refineSide(
   frame: Frame,
   map: LensMap,
   side: PrintedSide,
-  { passes, mostLines }: Effort,
+  { reachUnits, passes, mostLines }: Effort,
 ): SideShift | null {
   const middle = { x: (side.from.x + side.to.x) / 2, y: (side.from.y + side.to.y) / 2 };
   const { unitsPerPixel } = imageNormal(map, middle, side.normal);

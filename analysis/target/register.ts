@@ -17,6 +17,7 @@ import { findStations } from './find-stations.ts';
 import { reduceGreen } from './reduce.ts';
 import { type RefinedStation, refineCorners } from './refine-corners.ts';
 import { refineRings } from './refine-rings.ts';
+import type { Effort } from './refine-side.ts';
 import type { Registration } from './registration.ts';
 import { type Target, targets } from './target.ts';
 
@@ -44,12 +45,15 @@ export function registerTarget(frame: Frame, options: RegisterOptions = {}): Reg
   return registerFrom(frame, pose.target, enlargeMap(pose.map, frame, plane.factor));
 }
 
-/** Refines a rough map (good to some ten target units) to a registration. */
-export function registerFrom(frame: Frame, target: Target, rough: LensMap): Registration {
-  const first = refineCorners(frame, rough, target, { passes: 2, mostLines: 24 });
+const roughly: Effort = { reachUnits: 14, passes: 2, mostLines: 20 };
+const finely: Effort = { reachUnits: 7, passes: 3, mostLines: 64 };
+
+/** Refines a rough map, good to some eight target units, to a registration. */
+function registerFrom(frame: Frame, target: Target, rough: LensMap): Registration {
+  const first = refineCorners(frame, rough, target, roughly);
   if (first.length < leastSquares) throw tooFewSquares(first.length, target);
   const coarse = fitTo(first, [], target, rough);
-  const stations = refineCorners(frame, coarse.map, target, { passes: 3, mostLines: 64 });
+  const stations = refineCorners(frame, coarse.map, target, finely);
   if (stations.length < leastSquares) throw tooFewSquares(stations.length, target);
   const rings = refineRings(frame, coarse.map, target);
   const fitted = fitTo(stations, rings, target, coarse.map);
