@@ -1,5 +1,5 @@
+import { numberText } from '@/lib/shared/numbers';
 import type { ReportContent } from '@/lib/shared/report';
-import { formatNumber } from '../ui/number';
 import { DataTable, Picture } from './data-table';
 import { round } from './draw';
 
@@ -64,7 +64,7 @@ export function AbPlane({
         </g>
         {colours.map(({ id, reference, measured, rgb, deltaE2000 }) => (
           <g key={id}>
-            <title>{`${id}: ΔE ${formatNumber(deltaE2000, 1)}`}</title>
+            <title>{`${id}: ΔE ${numberText(deltaE2000, 1)}`}</title>
             <path
               d={`M${x(reference[1])} ${y(reference[2])}L${x(measured[1])} ${y(measured[2])}`}
               stroke={`rgb(${rgb.join(' ')})`}
@@ -104,8 +104,7 @@ const mean = (values: readonly number[]) =>
   values.length ? values.reduce((sum, value) => sum + value, 0) / values.length : 0;
 
 function ColourTable({ colours }: { colours: readonly ColourPoint[] }) {
-  const lab = (values: readonly number[]) =>
-    values.map((value) => formatNumber(value, 0)).join(', ');
+  const lab = (values: readonly number[]) => values.map((value) => numberText(value, 0)).join(', ');
   return (
     <DataTable
       caption="Each colour disc: reference and measured CIELAB (D50) and their difference, CIEDE2000"
@@ -114,7 +113,7 @@ function ColourTable({ colours }: { colours: readonly ColourPoint[] }) {
         id,
         lab(reference),
         lab(measured),
-        formatNumber(deltaE2000, 1),
+        numberText(deltaE2000, 1),
       ])}
     />
   );
@@ -132,7 +131,7 @@ function spoken(colours: readonly ColourPoint[]): string {
   const strength = reference
     ? `; colours ${Math.round((chroma((colour) => colour.measured) / reference) * 100)} % as strong as the target’s`
     : '';
-  return `${colours.length} colours in the a*b* plane, mean difference ${formatNumber(mean(errors), 1)} ΔE00${
-    worst ? `, largest ${formatNumber(worst.deltaE2000, 1)} at ${worst.id}` : ''
+  return `${colours.length} colours in the a*b* plane, mean difference ${numberText(mean(errors), 1)} ΔE00${
+    worst ? `, largest ${numberText(worst.deltaE2000, 1)} at ${worst.id}` : ''
   }${strength}`;
 }

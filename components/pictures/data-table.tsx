@@ -39,16 +39,12 @@ export function DataTable({
       <summary className="label inline-flex min-h-6 items-center gap-1 underline decoration-line underline-offset-3 hover:decoration-current">
         {summary}
       </summary>
-      <table className="mt-1 w-full border-collapse text-left text-[13px] tabular-nums">
+      <table className="mt-1 w-full border-collapse text-left text-[13px] tabular-nums [&_tbody_th]:font-medium [&_td]:border-line-2 [&_td]:border-b [&_td]:py-1 [&_td]:pl-3 [&_td]:text-right [&_th]:border-line-2 [&_th]:border-b [&_th]:py-1 [&_thead_th]:align-bottom [&_thead_th+th]:pl-3 [&_thead_th+th]:text-right">
         <caption className="sr-only">{caption}</caption>
-        <thead>
+        <thead className="label">
           <tr>
-            {head.map((title, column) => (
-              <th
-                key={title}
-                scope="col"
-                className={`label border-line border-b py-1 pr-3 ${column ? 'text-right' : ''}`}
-              >
+            {head.map((title) => (
+              <th key={title} scope="col">
                 {title}
               </th>
             ))}
@@ -59,15 +55,9 @@ export function DataTable({
             <tr key={row.join('|')}>
               {row.map((cell, column) =>
                 column ? (
-                  <td key={head[column]} className="border-line-2 border-b py-1 pr-3 text-right">
-                    {cell}
-                  </td>
+                  <td key={head[column]}>{cell}</td>
                 ) : (
-                  <th
-                    key={head[column]}
-                    scope="row"
-                    className="border-line-2 border-b py-1 pr-3 font-medium"
-                  >
+                  <th key={head[column]} scope="row">
                     {cell}
                   </th>
                 ),

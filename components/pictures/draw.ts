@@ -1,3 +1,6 @@
+import { numberText } from '@/lib/shared/numbers';
+import { placeWords } from '@/lib/shared/places';
+
 const tau = Math.PI * 2;
 
 /** Two decimals are a hundredth of a screen pixel: enough, and short in the page. */
@@ -41,23 +44,14 @@ export function valueAt(xs: readonly number[], ys: readonly number[], at: number
   return null;
 }
 
-/** Plain names of the thirteen stations and the groups of them. */
-export const placeNames: Readonly<Record<string, string>> = {
-  C: 'Middle',
-  N: 'Top',
-  S: 'Bottom',
-  W: 'Left',
-  E: 'Right',
-  NW: 'Upper left',
-  NE: 'Upper right',
-  SW: 'Lower left',
-  SE: 'Lower right',
-  'inner-NW': 'Inner upper left',
-  'inner-NE': 'Inner upper right',
-  'inner-SW': 'Inner lower left',
-  'inner-SE': 'Inner lower right',
-  centre: 'Middle',
-  partway: 'Partway out',
-  corners: 'Corners',
-};
-export const placeName = (id: string) => placeNames[id] ?? id;
+/** A station or a group of them as the beginning of a line: "Upper left". */
+export function placeName(id: string): string {
+  const words = placeWords[id] ?? id;
+  return words.charAt(0).toUpperCase() + words.slice(1);
+}
+
+/** A number that says its sign either way: +0.7. */
+export function signedText(value: number, decimals: number): string {
+  const text = numberText(value, decimals);
+  return value > 0 && Number(text) !== 0 ? `+${text}` : text;
+}

@@ -1,5 +1,5 @@
+import { numberText } from '@/lib/shared/numbers';
 import type { FramePicture } from '@/lib/shared/report';
-import { formatNumber } from '../ui/number';
 import { DataTable, Picture } from './data-table';
 import { arcPath, placeName, round } from './draw';
 import { hairFactor, lengthOf } from './frame-data';
@@ -33,8 +33,11 @@ export function FrameMap({
         viewBox={`0 0 ${drawnWidth} ${height}`}
         role="img"
         aria-label={spoken(frame)}
-        className="block h-auto w-full rounded-well bg-well"
+        fontWeight={640}
+        textAnchor="middle"
+        className="block h-auto w-full text-[28px] max-sm:text-[42px]"
       >
+        <rect width={drawnWidth} height={height} rx={22} fill="var(--well)" />
         {frame.stations.map((station) => (
           <Station
             key={station.id}
@@ -122,14 +125,11 @@ function Station({
       <text
         x={x}
         y={round(above ? y - radius - width * 1.5 : y + radius + width * 1.5)}
-        textAnchor="middle"
         dominantBaseline={above ? undefined : 'hanging'}
-        fontWeight={640}
         fill={station.weak ? '#ffc9b0' : '#ffffff'}
         stroke="var(--well)"
         strokeWidth={6}
         paintOrder="stroke"
-        className="text-[28px] max-sm:text-[42px]"
       >
         {share === null ? '–' : `${Math.round(share * 100)}\u2009%`}
       </text>
@@ -175,15 +175,15 @@ function Hair({
 
 function FrameTable({ frame }: { frame: FramePicture }) {
   const px = (point: { x: number; y: number } | null) =>
-    point ? `${formatNumber(point.x, 2)}, ${formatNumber(point.y, 2)}` : '–';
+    point ? `${numberText(point.x, 2)}, ${numberText(point.y, 2)}` : '–';
   return (
     <DataTable
       caption="Sharpness and colour displacement by place in the picture; displacement is right, down"
       head={['Place', 'Sharpness, cy/px', 'Share, %', 'Red, px', 'Blue, px']}
       rows={frame.stations.map((station) => [
         placeName(station.id),
-        station.mtf50 === null ? '–' : formatNumber(station.mtf50, 3),
-        station.mtf50 === null ? '–' : formatNumber((station.mtf50 / frame.fullCircle) * 100, 0),
+        station.mtf50 === null ? '–' : numberText(station.mtf50, 3),
+        station.mtf50 === null ? '–' : numberText((station.mtf50 / frame.fullCircle) * 100, 0),
         px(station.red),
         px(station.blue),
       ])}

@@ -1,4 +1,4 @@
-import { formatNumber } from '../ui/number';
+import { numberText } from '@/lib/shared/numbers';
 import { DataTable, Picture } from './data-table';
 
 /** ISO 12232: 18 % grey belongs at 461/1000 of full scale, 118 of 255. */
@@ -83,7 +83,7 @@ function BinTable({ bins }: { bins: readonly number[] }) {
     const share = bins.slice(from, to).reduce((sum, bin) => sum + bin, 0);
     return [
       `${Math.round((from * 256) / bins.length)}–${Math.round((to * 256) / bins.length) - 1}`,
-      formatNumber(share * 100, 1),
+      numberText(share * 100, 1),
     ];
   });
   return (

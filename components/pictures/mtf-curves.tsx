@@ -1,4 +1,4 @@
-import { formatNumber } from '../ui/number';
+import { numberText } from '@/lib/shared/numbers';
 import { DataTable, Picture } from './data-table';
 import { linePath, valueAt } from './draw';
 import { placeLabels } from './labels';
@@ -128,10 +128,10 @@ function halfAt(curve: Curve): number | null {
 
 function CurveTable({ curves }: { curves: readonly Curve[] }) {
   const rows = [0.05, 0.1, 0.15, 0.2, 0.25, 0.3, 0.35, 0.4, 0.45, 0.5].map((frequency) => [
-    formatNumber(frequency, 2),
+    numberText(frequency, 2),
     ...curves.map((curve) => {
       const response = valueAt(curve.frequency, curve.response, frequency);
-      return response === null ? '–' : formatNumber(response * 100, 0);
+      return response === null ? '–' : numberText(response * 100, 0);
     }),
   ]);
   return (
@@ -148,7 +148,7 @@ function spoken(curves: readonly Curve[]): string {
     const half = halfAt(curve);
     return half === null
       ? `${curve.label} stays above half`
-      : `${curve.label} falls to half at ${formatNumber(half, 3)} cycles per pixel`;
+      : `${curve.label} falls to half at ${numberText(half, 3)} cycles per pixel`;
   });
   return `Edge response: ${halves.join('; ')}`;
 }

@@ -1,6 +1,6 @@
 import type { Plots, RegistrationSummary } from '@/analysis/result';
+import { numberText } from '@/lib/shared/numbers';
 import { cn } from '../ui/cn';
-import { formatNumber } from '../ui/number';
 import { DataTable, Picture } from './data-table';
 import { linePath, placeName, round } from './draw';
 
@@ -110,7 +110,7 @@ function Marks({
 function RingTable({ registration }: { registration: RegistrationSummary }) {
   const rings = Object.entries(registration.rings).map(([id, [x, y]]) => [
     id,
-    `${formatNumber(x, 1)}, ${formatNumber(y, 1)}`,
+    `${numberText(x, 1)}, ${numberText(y, 1)}`,
   ]);
   return (
     <DataTable
@@ -118,9 +118,9 @@ function RingTable({ registration }: { registration: RegistrationSummary }) {
       head={['What', 'Pixels from the upper left']}
       rows={[
         ...rings,
-        ['Distance of the found corners from the model', formatNumber(registration.residual, 3)],
-        ['Rotation, degrees clockwise', formatNumber(registration.rotation, 2)],
-        ['Share of the frame, %', formatNumber(registration.coverage * 100, 0)],
+        ['Distance of the found corners from the model', numberText(registration.residual, 3)],
+        ['Rotation, degrees clockwise', numberText(registration.rotation, 2)],
+        ['Share of the frame, %', numberText(registration.coverage * 100, 0)],
       ]}
     />
   );

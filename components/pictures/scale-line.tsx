@@ -1,5 +1,5 @@
+import { decimalsOf, numberText, withDoubt } from '@/lib/shared/numbers';
 import type { RuleOutcome } from '@/lib/shared/report';
-import { decimalsFor, formatNumber, formatWithDoubt } from '../ui/number';
 import { type Shown, StandingShape, standingWords } from './state-disc';
 
 export interface ScaleData {
@@ -32,32 +32,23 @@ export function ScaleLine({ data, className }: { data: ScaleData; className?: st
       className={`block overflow-visible ${className ?? ''}`}
     >
       <line x1="0" x2="100%" y1={17} y2={17} stroke="var(--line)" strokeWidth={1.5} />
-      {ticks(limits).map(({ letters, limit }) => (
-        <g key={`${letters}${limit}`}>
-          <line
-            x1={at(limit)}
-            x2={at(limit)}
-            y1={10}
-            y2={24}
-            stroke="var(--edge)"
-            strokeWidth={1.5}
-          />
-          <text x={at(limit)} y={36} textAnchor="middle" fontSize={11} fill="var(--ink-3)">
+      <g stroke="var(--edge)" strokeWidth={1.5}>
+        {ticks(limits).map(({ letters, limit }) => (
+          <line key={`${letters}${limit}`} x1={at(limit)} x2={at(limit)} y1={10} y2={24} />
+        ))}
+      </g>
+      <g textAnchor="middle" fontSize={11} fill="var(--ink-3)">
+        {ticks(limits).map(({ letters, limit }) => (
+          <text key={`${letters}${limit}`} x={at(limit)} y={36}>
             {letters}
           </text>
-        </g>
-      ))}
-      {[...new Set(peers)].map((peer) => (
-        <line
-          key={peer}
-          x1={at(peer)}
-          x2={at(peer)}
-          y1={13}
-          y2={21}
-          stroke="var(--edge)"
-          strokeOpacity={0.7}
-        />
-      ))}
+        ))}
+      </g>
+      <g stroke="var(--edge)" strokeOpacity={0.7}>
+        {[...new Set(peers)].map((peer) => (
+          <line key={peer} x1={at(peer)} x2={at(peer)} y1={13} y2={21} />
+        ))}
+      </g>
       {value === null ? null : (
         <>
           {expanded ? (
@@ -103,17 +94,16 @@ function ticks(limits: RuleOutcome['limits']): { letters: string; limit: number 
 }
 
 function spoken({ label, unit, value, expanded, limits, peers, standing }: ScaleData): string {
-  const reading =
-    value === null ? 'not tested' : formatWithDoubt(value, expanded, unit, decimalsFor(expanded));
+  const reading = value === null ? 'not tested' : withDoubt(value, expanded ?? 0, unit);
   const within = limits.map(({ letter, low, high }) => {
     const ends = [
-      low === null ? null : `from ${formatNumber(low, tidy(low))}`,
-      high === null ? null : `up to ${formatNumber(high, tidy(high))}`,
+      low === null ? null : `from ${numberText(low, tidy(low))}`,
+      high === null ? null : `up to ${numberText(high, tidy(high))}`,
     ];
     return `${letter} ${ends.filter(Boolean).join(' ')}`;
   });
   const range = peers.length
-    ? `; ${peers.length} other cameras of this model between ${formatNumber(Math.min(...peers), decimalsFor(expanded))} and ${formatNumber(Math.max(...peers), decimalsFor(expanded))}`
+    ? `; ${peers.length} other cameras of this model between ${numberText(Math.min(...peers), decimalsOf(expanded ?? 0, 2))} and ${numberText(Math.max(...peers), decimalsOf(expanded ?? 0, 2))}`
     : '';
   return `${label}: ${reading}, ${standingWords[standing]}. Limits: ${within.join('; ')}${range}`;
 }

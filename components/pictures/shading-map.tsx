@@ -1,7 +1,6 @@
 import type { Plots } from '@/analysis/result';
-import { formatNumber } from '../ui/number';
 import { DataTable, Picture } from './data-table';
-import { round } from './draw';
+import { round, signedText } from './draw';
 
 /** Darker than the centre by this much is drawn as the darkest grey. */
 const darkest = -2;
@@ -55,7 +54,7 @@ export function ShadingMap({
             fontWeight={640}
             fill={value < -1.25 ? '#fff' : '#161616'}
           >
-            {formatNumber(value, 2, true)}
+            {signedText(value, 2)}
           </text>
         ))}
       </svg>
@@ -87,7 +86,7 @@ function ShadingTable({ shading }: { shading: NonNullable<Plots['shading']> }) {
     <DataTable
       caption="Light against the centre, in EV"
       head={['Place', 'EV']}
-      rows={named(shading).map(({ name, value }) => [name, formatNumber(value, 2, true)])}
+      rows={named(shading).map(({ name, value }) => [name, signedText(value, 2)])}
     />
   );
 }
@@ -95,6 +94,6 @@ function ShadingTable({ shading }: { shading: NonNullable<Plots['shading']> }) {
 function spoken(shading: NonNullable<Plots['shading']>): string {
   const corners = named(shading)
     .filter(({ name }) => name !== 'Middle')
-    .map(({ name, value }) => `${name.toLowerCase()} ${formatNumber(value, 2, true)} EV`);
+    .map(({ name, value }) => `${name.toLowerCase()} ${signedText(value, 2)} EV`);
   return `Light in the corners against the centre: ${corners.join(', ')}`;
 }

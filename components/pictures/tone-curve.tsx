@@ -1,6 +1,6 @@
-import { formatNumber } from '../ui/number';
+import { numberText } from '@/lib/shared/numbers';
 import { DataTable, Picture } from './data-table';
-import { linePath, round } from './draw';
+import { linePath, round, signedText } from './draw';
 
 export interface TonePoint {
   /** As printed, 0…1. */
@@ -117,7 +117,7 @@ function Axes() {
           y={area.bottom + 17}
           textAnchor="middle"
         >
-          {formatNumber(ev, 0, true)}
+          {signedText(ev, 0)}
         </text>
       ))}
       <text x={area.right} y={area.bottom + 31} textAnchor="end">
@@ -133,8 +133,8 @@ function ToneTable({ tone }: { tone: readonly TonePoint[] }) {
       caption="Each grey disc: reflectance as printed and the mean code that the camera gave it"
       head={['Reflectance, %', 'Code', 'In the fit']}
       rows={tone.map(({ reflectance, code, used }) => [
-        formatNumber(reflectance * 100, 1),
-        formatNumber(code * 255, 0),
+        numberText(reflectance * 100, 1),
+        numberText(code * 255, 0),
         used ? 'yes' : 'no',
       ])}
     />
@@ -150,7 +150,7 @@ function spoken(tone: readonly TonePoint[]): string {
     null,
   );
   const grey = nearest
-    ? `: the ${formatNumber(nearest.reflectance * 100, 0)} % grey came out at code ${formatNumber(nearest.code * 255, 0)}; 18 % belongs at 118`
+    ? `: the ${numberText(nearest.reflectance * 100, 0)} % grey came out at code ${numberText(nearest.code * 255, 0)}; 18 % belongs at 118`
     : '';
   return `Tone response of ${tone.length} greys${grey}`;
 }

@@ -431,3 +431,36 @@ export const content: ReportContent = {
   ],
   analysisVersion: '1.0.0',
 };
+
+/** The same page at its limits: long names, no weak points, no frame, parts only, many failed checks. */
+export const extreme: ReportContent = {
+  ...content,
+  unit: {
+    ...content.unit,
+    maker: 'Vereinigte Feinmechanische Werkstätten Łódź',
+    model: 'Superpanorama Reflex Automatic 2000 Professional',
+    modelClass: 'interchangeable-lens',
+    accessories: [],
+  },
+  grade: {
+    ...content.grade,
+    letter: 'Parts',
+    overridden: true,
+    reason: 'The lens mount is bent, which none of the rules sees.',
+    signedByBenchWorker: true,
+  },
+  good: [],
+  weak: [],
+  frame: null,
+  curves: [],
+  colours: [],
+  tone: [],
+  pictures: [],
+  rules: Array.from({ length: 30 }, (_, index) => ({
+    ...rule(seeds[index % seeds.length] as RuleSeed, index),
+    label: `Rule ${index + 1} with a rather long name that has to wrap somewhere`,
+  })),
+  checks: content.checks.map((check) => ({ ...check, outcome: 'fail' as const })),
+  repair: { ...content.repair, work: [], parts: [] },
+  cautions: [],
+};

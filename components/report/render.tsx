@@ -1,0 +1,14 @@
+import type { ReactElement } from 'react';
+import type { ReportContent } from '@/lib/shared/report';
+import { ReportDocument } from './report-document';
+import type { ReportStanding } from './report-page';
+
+type ToMarkup = (element: ReactElement) => string;
+
+/** The report as one HTML file. The renderer is passed in: Next's server bundle refuses to hold react-dom/server. */
+export function renderReport(
+  toMarkup: ToMarkup,
+  input: { content: ReportContent; standing: ReportStanding; css: string; origin: string },
+): string {
+  return `<!doctype html>${toMarkup(<ReportDocument {...input} />)}`;
+}

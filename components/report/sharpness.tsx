@@ -1,0 +1,75 @@
+import { sharpnessFinding } from '@/lib/shared/findings';
+import type { FramePicture, ReportContent } from '@/lib/shared/report';
+import { FrameMap } from '../pictures/frame-map';
+import { MtfCurves } from '../pictures/mtf-curves';
+import { Section } from './parts';
+
+type Picture = ReportContent['pictures'][number];
+
+/** The frame with its stations, the curves, and the unit's own pictures at 100 %. */
+export function Sharpness({ content, base }: { content: ReportContent; base: string }) {
+  const { frame, curves, pictures } = content;
+  if (!frame && curves.length === 0 && pictures.length === 0) return null;
+  return (
+    <Section
+      id="sharpness"
+      title={frame ? headlineOf(frame) : 'Sharpness'}
+      lead={
+        frame
+          ? `Each ring is one place in the picture. ${closedMeans(frame)} the hairs show how far red and blue are displaced there.`
+          : 'The target was not found in enough shots to draw sharpness over the frame.'
+      }
+    >
+      <div className="grid items-start gap-7 sm:grid-cols-[1.55fr_1fr]">
+        {frame ? <FrameMap frame={frame} /> : null}
+        <div className="grid min-w-0 gap-4">
+          {curves.length ? <MtfCurves curves={curves} /> : null}
+          <Crops pictures={pictures} base={base} />
+        </div>
+      </div>
+    </Section>
+  );
+}
+
+function closedMeans(frame: FramePicture): string {
+  return frame.fullCircleMeans === 'peers'
+    ? 'A closed ring is as sharp as other cameras of this model;'
+    : 'A closed ring is as sharp as the middle of this camera’s own picture;';
+}
+
+function headlineOf(frame: FramePicture): string {
+  const finding = sharpnessFinding(
+    frame.stations.flatMap(({ id, mtf50 }) =>
+      mtf50 === null ? [] : [{ name: 'sharpness.mtf50', zone: id, value: mtf50, expanded: 0 }],
+    ),
+  );
+  return finding?.title ?? 'Sharpness over the frame';
+}
+
+/** Shown at the size they were cut, so that one pixel of the photograph is one of the page. */
+function Crops({ pictures, base }: { pictures: Picture[]; base: string }) {
+  if (pictures.length === 0) return null;
+  return (
+    <div>
+      <div className="flex flex-wrap gap-2.5">
+        {pictures.map((picture) => (
+          <figure key={picture.name} className="min-w-[130px] flex-1 basis-[130px]">
+            <img
+              src={`${base}/pictures/${picture.name}`}
+              width={picture.width}
+              height={picture.height}
+              alt={picture.alt}
+              loading="lazy"
+              decoding="async"
+              className="h-auto w-full rounded-lg bg-well"
+            />
+            <figcaption className="mt-1 text-[12.5px] text-ink-2">{picture.label}</figcaption>
+          </figure>
+        ))}
+      </div>
+      <p className="label mt-2 text-ink-3">
+        From this camera’s own shots, cut without resizing; open one to see it at 100 %.
+      </p>
+    </div>
+  );
+}
