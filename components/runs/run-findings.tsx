@@ -25,7 +25,16 @@ import { GradeSoFar } from './grade-so-far';
 import { NumberList } from './number-list';
 
 /** The run's means as findings, drawn on the newest measured shot of the target. */
-export function RunFindings({ run, shot }: { run: RunDetail; shot: ShotDetail | null }) {
+export function RunFindings({
+  run,
+  shot,
+  graded = false,
+}: {
+  run: RunDetail;
+  shot: ShotDetail | null;
+  /** The page shows the grade and its rules itself. */
+  graded?: boolean;
+}) {
   const readings = readingsOfRun(run.results);
   const sharpness = sharpnessFinding(readings);
   const analysis = shot?.analysis ?? null;
@@ -42,30 +51,32 @@ export function RunFindings({ run, shot }: { run: RunDetail; shot: ShotDetail | 
   return (
     <>
       <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1.25fr)_minmax(0,1fr)]">
-        <FindingPanel finding={sharpness} otherwise="Sharpness over the frame" detailed>
+        <FindingPanel finding={sharpness} otherwise="Sharpness over the frame">
           {frame ? <FrameMap frame={frame} /> : <NoPicture />}
         </FindingPanel>
         <div className="grid gap-3.5">
-          <FindingPanel finding={exposureFinding(readings)} otherwise="Exposure" detailed>
+          <FindingPanel finding={exposureFinding(readings)} otherwise="Exposure">
             {analysis ? <Histogram bins={analysis.plots.histogram} /> : <NoPicture />}
           </FindingPanel>
-          <GradeSoFar proposal={run.proposal} />
+          {graded ? null : <GradeSoFar proposal={run.proposal} />}
         </div>
       </div>
       <div className="grid items-start gap-3.5 lg:grid-cols-2 2xl:grid-cols-3">
-        <FindingPanel finding={colourFinding(readings)} otherwise="Colours" detailed>
+        <FindingPanel finding={colourFinding(readings)} otherwise="Colours">
           {colours?.length ? <AbPlane colours={colourPoints(colours)} /> : <NoPicture />}
         </FindingPanel>
-        <FindingPanel finding={fringeFinding(readings)} otherwise="Edges" detailed>
+        <FindingPanel finding={fringeFinding(readings)} otherwise="Edges">
           {curves.length > 0 ? <MtfCurves curves={curves} /> : <NoPicture />}
         </FindingPanel>
-        <Panel aria-label="Numbers" className="lg:max-2xl:col-span-2">
-          <PanelHead
-            title="Numbers"
-            aside={`${run.done} shots · ${run.peers.units} others of this model`}
-          />
-          {run.proposal ? <NumberList rules={run.proposal.rules} /> : <NoPicture />}
-        </Panel>
+        {graded ? null : (
+          <Panel aria-label="Numbers" className="lg:max-2xl:col-span-2">
+            <PanelHead
+              title="Numbers"
+              aside={`${run.done} shots · ${run.peers.units} others of this model`}
+            />
+            {run.proposal ? <NumberList rules={run.proposal.rules} /> : <NoPicture />}
+          </Panel>
+        )}
       </div>
     </>
   );
@@ -74,20 +85,16 @@ export function RunFindings({ run, shot }: { run: RunDetail; shot: ShotDetail | 
 function FindingPanel({
   finding,
   otherwise,
-  detailed = false,
   children,
 }: {
   finding: Finding | null;
   otherwise: string;
-  detailed?: boolean;
   children: ReactNode;
 }) {
   return (
     <Panel aria-label={otherwise}>
       <PanelHead title={finding?.title ?? otherwise} className="mb-1" />
-      {detailed && finding?.detail ? (
-        <p className="mb-3 text-pretty text-ink-2">{finding.detail}</p>
-      ) : null}
+      {finding?.detail ? <p className="mb-3 text-pretty text-ink-2">{finding.detail}</p> : null}
       {children}
     </Panel>
   );

@@ -14,6 +14,7 @@ export function UnitCards({ rows, stale = false }: { rows: UnitRow[]; stale?: bo
         <li key={unit.tag} className="border-line-2 border-b last:border-0">
           <Link
             href={`/units/${unit.tag}`}
+            data-row
             className="grid grid-cols-[72px_minmax(0,1fr)_auto] items-start gap-3 py-2.5 no-underline"
           >
             <Thumb src={unit.picture} />

@@ -6,6 +6,7 @@ import { Panel } from '@/components/ui/panel';
 import { EmptyState, ErrorState, LoadingLines } from '@/components/ui/states';
 import { sentenceOf } from '@/lib/client/api';
 import { useUnits } from '@/lib/client/queries';
+import { useRowKeys } from '@/lib/client/rows';
 import { useShortcuts } from '@/lib/client/shortcuts';
 import { searchOf, unitQueryOf } from '@/lib/client/units-path';
 import type { Page, StateCounts, UnitRow } from '@/lib/shared/api';
@@ -32,9 +33,8 @@ export function UnitList({
     const next = searchOf({ ...query, page: 1, ...change });
     window.history.replaceState(null, '', next === '' ? '/bench' : `/bench?${next}`);
   };
+  useRowKeys('unit');
   useShortcuts([
-    { key: 'ArrowDown', label: 'Next unit', run: () => focusRow(1) },
-    { key: 'ArrowUp', label: 'Unit before', run: () => focusRow(-1) },
     { key: 'n', label: 'Take a camera in', run: () => router.push('/arrivals#take-in') },
   ]);
   return (
@@ -144,12 +144,4 @@ function Pages({ page, onPage }: { page: Page<UnitRow>; onPage: (page: number) =
       ) : null}
     </nav>
   );
-}
-
-/** Moves along the rows with the arrow keys; Enter then opens the link. */
-function focusRow(step: number): void {
-  const rows = [...document.querySelectorAll<HTMLElement>('[data-row]')];
-  const here = rows.indexOf(document.activeElement as HTMLElement);
-  const next = here < 0 ? (step > 0 ? 0 : rows.length - 1) : here + step;
-  rows[Math.min(rows.length - 1, Math.max(0, next))]?.focus();
 }
