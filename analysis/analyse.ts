@@ -24,7 +24,12 @@ export interface AnalyseOptions {
   readonly target?: 'auto' | Shape;
   /** Milliseconds from any start; the browser's and Node's performance.now is finer than the default Date.now. */
   readonly now?: () => number;
+  /** Told how long each stage took, for benchmarks. */
+  readonly onStage?: (name: string, milliseconds: number) => void;
 }
+
+/** Runs a stage and reports its time. */
+type Stage = <T>(name: string, work: () => T) => T;
 
 type Part = Pick<Analysis, 'registration' | 'metrics' | 'warnings' | 'plots'>;
 
@@ -44,11 +49,20 @@ export function analyseFrame(
       `Photographs of kind ${kind} can’t be measured yet. Use kind target, scene or auto.`,
     );
   }
+  const stage: Stage = (name, work) => {
+    const from = now();
+    const result = work();
+    options.onStage?.(name, now() - from);
+    return result;
+  };
   const start = now();
-  const registration = kind === 'scene' ? null : findTarget(frame, target, kind === 'auto');
+  const registration =
+    kind === 'scene'
+      ? null
+      : stage('registration', () => findTarget(frame, target, kind === 'auto'));
   const registered = now();
   const part = registration
-    ? analyseTarget(frame, capture, registration)
+    ? analyseTarget(frame, capture, registration, stage)
     : analyseScene(frame, kind === 'auto');
   const end = now();
   return {
@@ -81,10 +95,15 @@ function findTarget(
   }
 }
 
-function analyseTarget(frame: Frame, capture: Capture, registration: Registration): Part {
-  const frameLight = measureFrame(frame);
-  const samples = sampleDiscs(frame, registration);
-  const tone = measureTone(frame, samples);
+function analyseTarget(
+  frame: Frame,
+  capture: Capture,
+  registration: Registration,
+  stage: Stage,
+): Part {
+  const frameLight = stage('histograms and clipping', () => measureFrame(frame));
+  const samples = stage('discs', () => sampleDiscs(frame, registration));
+  const tone = stage('tone', () => measureTone(frame, samples));
   const metrics: Metric[] = [];
   const warnings: Warning[] = [...warnOfRegistration(frame, registration), ...warnOfGreys(samples)];
   const plots: Plots = {
@@ -96,8 +115,10 @@ function analyseTarget(frame: Frame, capture: Capture, registration: Registratio
   };
   if (tone) {
     const { meanReflectance } = registration.target;
-    const exposure = measureExposure(tone, frameLight, capture, meanReflectance);
-    const colour = measureColour(frame, samples, tone);
+    const exposure = stage('exposure', () =>
+      measureExposure(tone, frameLight, capture, meanReflectance),
+    );
+    const colour = stage('colour', () => measureColour(frame, samples, tone));
     metrics.push(...exposure.metrics, ...colour.metrics);
     warnings.push(...exposure.warnings, ...colour.warnings);
     plots.colours = colour.plots;
@@ -106,9 +127,13 @@ function analyseTarget(frame: Frame, capture: Capture, registration: Registratio
   }
   metrics.push(measureMedian(frameLight, tone), ...measureClipping(frameLight));
 
-  const traces = traceEdges(frame, registration, tone?.toLight ?? frame.toLinear);
-  const sharpness = measureSharpness(frame, registration, traces);
-  const fringes = measureFringes(frame, registration, traces, frame.chromaHalved ?? false);
+  const traces = stage('edges', () =>
+    traceEdges(frame, registration, tone?.toLight ?? frame.toLinear),
+  );
+  const sharpness = stage('sharpness', () => measureSharpness(frame, registration, traces));
+  const fringes = stage('fringes', () =>
+    measureFringes(frame, registration, traces, frame.chromaHalved ?? false),
+  );
   metrics.push(...sharpness.metrics, ...fringes.metrics);
   warnings.push(...sharpness.warnings);
   plots.stations = plotStations(frame, registration, sharpness, fringes);

@@ -1,43 +1,41 @@
 import { solveLinear } from '../numeric/linear-solve.ts';
 import { labToLinearSrgb, linearSrgbToLab } from './cie.ts';
 import { deltaE2000 } from './delta-e-2000.ts';
-import { apply, type Triple } from './matrix.ts';
+import { apply, identity, type Triple } from './matrix.ts';
 
 /**
- * CIEDE2000 that each colour keeps after the best 3 × 3 matrix in linear light.
- * Best: least squares of the differences in lightness, chroma and hue, each over CIEDE2000's own weight at the reference,
- * by three Gauss–Newton steps from the matrix that is best in linear light.
+ * The 3 × 3 matrix in linear light that brings the measured colours nearest to their references.
+ * Nearest: least squares of the differences in lightness, chroma and hue, each over CIEDE2000's own weight at the reference,
+ * by at most three Gauss–Newton steps from the matrix that is best in linear light.
  * @param linear     measured linear sRGB
  * @param references CIELAB D50, as many
  */
-export function correctedErrors(
+export function bestMatrix(
   linear: readonly Triple[],
   references: readonly Triple[],
-): number[] {
+): readonly number[] {
   let matrix = linearFit(linear, references);
-  if (!matrix) return errorsOf(linear, references);
-  let best = errorsOf(correct(linear, matrix), references);
+  if (!matrix) return identity;
+  let sum = squares(linear, matrix, references);
   for (let step = 0; step < 3; step++) {
     const next = refine(matrix, linear, references);
-    if (!next) break;
-    const errors = errorsOf(correct(linear, next), references);
-    if (squares(errors) >= squares(best)) break;
-    best = errors;
+    const nextSum = next ? squares(linear, next, references) : sum;
+    if (!next || nextSum >= sum) break;
+    sum = nextSum;
     matrix = next;
   }
-  return best;
+  return matrix;
 }
 
-function correct(linear: readonly Triple[], matrix: readonly number[]): Triple[] {
-  return linear.map((rgb) => apply(matrix, rgb));
-}
-
-function errorsOf(linear: readonly Triple[], references: readonly Triple[]): number[] {
-  return linear.map((rgb, i) => deltaE2000(linearSrgbToLab(rgb), references[i]!));
-}
-
-function squares(errors: readonly number[]): number {
-  return errors.reduce((sum, error) => sum + error * error, 0);
+function squares(
+  linear: readonly Triple[],
+  matrix: readonly number[],
+  references: readonly Triple[],
+): number {
+  return linear.reduce((sum, rgb, i) => {
+    const error = deltaE2000(linearSrgbToLab(apply(matrix, rgb)), references[i]!);
+    return sum + error * error;
+  }, 0);
 }
 
 /** Row by row: M minimising Σ |M·measured − reference|² in linear sRGB. */

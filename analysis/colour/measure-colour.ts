@@ -1,11 +1,11 @@
 import type { Frame } from '../image.ts';
 import type { ColourPlot, Metric, Warning } from '../result.ts';
 import { chroma, hue, labToLinearSrgb, linearSrgbToLab } from './cie.ts';
-import { correctedErrors } from './correct-colours.ts';
+import { bestMatrix } from './correct-colours.ts';
 import { deltaE2000 } from './delta-e-2000.ts';
 import type { DiscSample } from './disc-sample.ts';
 import { toLinearSrgb } from './frame-colour.ts';
-import type { Triple } from './matrix.ts';
+import { apply, type Triple } from './matrix.ts';
 import { midGrey, toCode } from './srgb.ts';
 
 /** What colour needs of the tone response: how 18 % grey came out, and how light and file are related near it. */
@@ -34,7 +34,16 @@ interface Colour {
   readonly clipped: boolean;
 }
 
-/** The discs' statistics under one pair of gains: what the uncertainty is propagated through. */
+/** What one disc adds to the statistics. */
+interface DiscError {
+  chroma: number;
+  /** Absolute difference of hue angle, degrees; 0 for discs that aren't of the hue circle. */
+  hue: number;
+  error: number;
+  /** The error left after the best matrix. */
+  corrected: number;
+}
+
 interface Statistics {
   saturation: number;
   hue: number;
@@ -119,20 +128,25 @@ function toRgb8(linear: Triple): [number, number, number] {
   return [code(linear[0]), code(linear[1]), code(linear[2])];
 }
 
-function statistics(colours: readonly Colour[], linear: readonly Triple[]): Statistics {
-  const labs = linear.map(linearSrgbToLab);
-  const references = colours.map((c) => c.reference);
-  const errors = labs.map((lab, i) => deltaE2000(lab, references[i]!));
-  const corrected = correctedErrors(linear, references);
-  const hues = colours.flatMap((c, i) =>
-    c.kind === 'hue' ? [hueDifference(labs[i]!, references[i]!)] : [],
-  );
+function judge(colour: Colour, linear: Triple, matrix: readonly number[]): DiscError {
+  const lab = linearSrgbToLab(linear);
   return {
-    saturation: (100 * mean(labs.map(chroma))) / mean(references.map(chroma)),
+    chroma: chroma(lab),
+    hue: colour.kind === 'hue' ? hueDifference(lab, colour.reference) : 0,
+    error: deltaE2000(lab, colour.reference),
+    corrected: deltaE2000(linearSrgbToLab(apply(matrix, linear)), colour.reference),
+  };
+}
+
+function summarise(colours: readonly Colour[], errors: readonly DiscError[]): Statistics {
+  const hues = errors.filter((_, i) => colours[i]!.kind === 'hue').map((e) => e.hue);
+  return {
+    saturation:
+      (100 * mean(errors.map((e) => e.chroma))) / mean(colours.map((c) => chroma(c.reference))),
     hue: hues.length > 0 ? mean(hues) : 0,
-    error: mean(errors),
-    errorMax: Math.max(...errors),
-    correctable: mean(corrected),
+    error: mean(errors.map((e) => e.error)),
+    errorMax: Math.max(...errors.map((e) => e.error)),
+    correctable: mean(errors.map((e) => e.corrected)),
   };
 }
 
@@ -141,23 +155,36 @@ function hueDifference(one: Triple, other: Triple): number {
   return Math.min(difference, 360 - difference);
 }
 
-/** The five quantities, with uncertainties by moving each input by its own standard uncertainty (JCGM 100, 5.1.3). */
+/**
+ * The five quantities, with uncertainties by moving each input by its own standard uncertainty (JCGM 100, 5.1.3).
+ * The best matrix is held still meanwhile: at its best it changes the mean only in second order.
+ */
 function measureDiscs(colours: readonly Colour[], gains: Triple, neutral: Neutral): Metric[] {
   const linear = colours.map((c) => scale(c.linear, gains));
-  const result = statistics(colours, linear);
+  const matrix = bestMatrix(
+    linear,
+    colours.map((c) => c.reference),
+  );
+  const errors = colours.map((c, i) => judge(c, linear[i]!, matrix));
+  const result = summarise(colours, errors);
   const variance: Statistics = { saturation: 0, hue: 0, error: 0, errorMax: 0, correctable: 0 };
-  const add = (moved: readonly Triple[]) => {
-    const other = statistics(colours, moved);
+  const add = (moved: readonly DiscError[]) => {
+    const other = summarise(colours, moved);
     for (const key of Object.keys(variance) as (keyof Statistics)[]) {
       variance[key] += (other[key] - result[key]) ** 2;
     }
   };
   for (let channel = 0; channel < 3; channel++) {
     const factor = 2 ** neutral.midGreyStops[channel]!;
-    add(linear.map((rgb) => withChannel(rgb, channel, rgb[channel]! * factor)));
-    colours.forEach((colour, i) => {
-      const step = colour.uncertainty[channel]! * gains[channel]!;
-      add(linear.with(i, withChannel(linear[i]!, channel, linear[i]![channel]! + step)));
+    const moved = (rgb: Triple, by: number) => withChannel(rgb, channel, rgb[channel]! + by);
+    add(
+      colours.map((c, i) =>
+        judge(c, moved(linear[i]!, linear[i]![channel]! * (factor - 1)), matrix),
+      ),
+    );
+    colours.forEach((c, i) => {
+      const step = c.uncertainty[channel]! * gains[channel]!;
+      add(errors.with(i, judge(c, moved(linear[i]!, step), matrix)));
     });
   }
   const metric = (key: keyof Statistics, unit: string): Metric => ({

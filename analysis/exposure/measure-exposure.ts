@@ -1,4 +1,4 @@
-import { midGrey } from '../colour/srgb.ts';
+import { midGrey, toLinear } from '../colour/srgb.ts';
 import type { Capture } from '../image.ts';
 import type { Metric, Warning } from '../result.ts';
 import type { FrameLight } from './measure-frame.ts';
@@ -99,7 +99,7 @@ function meterBias(
   if (capture.program === null || !automatic.has(capture.program)) return null;
   const asked = Math.log2(midGrey / meanReflectance);
   // What the frame holds beyond the field, and where it is dark, is metered as well: the two means bound the doubt.
-  const framed = frameLight.meanThrough(tone.luminanceToLight);
+  const framed = meanLight(frameLight, tone);
   const doubt = Math.abs(Math.log2(framed / meanReflectance)) / Math.sqrt(12);
   return {
     name: 'exposure.meterBias',
@@ -107,6 +107,14 @@ function meterBias(
     unit: 'EV',
     uncertainty: Math.hypot(biasUncertainty, Number.isFinite(doubt) ? doubt : 0),
   };
+}
+
+/** Mean relative light over the frame, from the luminance histogram. */
+function meanLight({ histogram }: FrameLight, tone: ToneResponse): number {
+  return histogram.reduce((sum, share, bin) => {
+    const luminance = toLinear((bin + 0.5) / histogram.length);
+    return sum + (share > 0 ? share * tone.luminanceToLight(luminance) : 0);
+  }, 0);
 }
 
 const outOfReach: Warning = {

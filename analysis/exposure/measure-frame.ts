@@ -7,8 +7,6 @@ export interface FrameLight {
   /** Median luminance in the file's linear light, and its standard uncertainty. */
   readonly median: number;
   readonly medianUncertainty: number;
-  /** Mean luminance in the file's linear light through `toLight`, see `meanLight`. */
-  meanThrough(toLight: (luminance: number) => number): number;
   /** % of pixels with any channel at 254 of 255 or more, and with all channels at 1 or less. */
   readonly clippedHighlights: number;
   readonly clippedShadows: number;
@@ -21,10 +19,10 @@ const bins = 64;
 /** Steps of luminance in the fine histogram, 0…1. */
 const fine = 1 << 15;
 /** More pixels than this don't change a median; clipping is counted on every one. */
-const enoughPixels = 2.5e6;
+const enoughPixels = 1e6;
 
 /**
- * One look over the whole frame: clipping on every pixel, median and histograms on an even sample of some two million.
+ * One look over the whole frame: clipping on every pixel, median and histograms on an even sample of a million or more.
  * Clipping: common practice, no source (levels as in ../README's quantities).
  */
 export function measureFrame(frame: Frame): FrameLight {
@@ -35,13 +33,6 @@ export function measureFrame(frame: Frame): FrameLight {
   return {
     median,
     medianUncertainty: uncertainty,
-    meanThrough: (toLight) => {
-      let sum = 0;
-      luminance.forEach((n, bin) => {
-        if (n > 0) sum += n * toLight((bin + 0.5) / fine);
-      });
-      return sum / count;
-    },
     clippedHighlights: (100 * clipped.highlights) / pixels,
     clippedShadows: (100 * clipped.shadows) / pixels,
     pixels,
@@ -77,15 +68,17 @@ function countClippedBytes(data: Uint8Array): Clipped {
     const a = words[block * 3]!;
     const b = words[block * 3 + 1]!;
     const c = words[block * 3 + 2]!;
-    if ((atTop(a) | atTop(b) | atTop(c) | atTop(~a) | atTop(~b) | atTop(~c)) === 0) continue;
+    const top = (carry(a) & a) | (carry(b) & b) | (carry(c) & c);
+    const bottom = (carry(~a) & ~a) | (carry(~b) & ~b) | (carry(~c) & ~c);
+    if (((top | bottom) & 0x80808080) === 0) continue;
     addClipped(total, data, block * 12, block * 12 + 12, 255);
   }
   addClipped(total, data, blocks * 12, data.length, 255);
   return total;
 }
 
-function atTop(word: number): number {
-  return ((word & 0x7f7f7f7f) + 0x02020202) & word & 0x80808080;
+function carry(word: number): number {
+  return (word & 0x7f7f7f7f) + 0x02020202;
 }
 
 function addClipped(
