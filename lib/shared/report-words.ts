@@ -29,7 +29,7 @@ export interface WordFacts {
 export type ReportWords = Pick<ReportContent, 'headline' | 'summary' | 'good' | 'weak'>;
 
 const mostPoints = 3;
-/** Where A's limits are less than this share of the way to C's away, a good result is still worth knowing about. */
+/** A good result with less room than this is still worth knowing about. */
 const near = 0.35;
 const risk = 0.05;
 
@@ -38,7 +38,10 @@ interface Told {
   rule: RuleOutcome;
   value: number;
   standing: Standing;
-  /** Distance inside A's limits over the distance from A's to C's; negative outside. */
+  /**
+   * Room inside A's limits: 1 at the ideal, 0 at the limit, and beyond it negative by the distance from A's to C's.
+   * Where more is always better there is no ideal, and that distance measures both sides.
+   */
   room: number;
 }
 
@@ -87,25 +90,23 @@ function toldOf(id: TopicId, rule: RuleOutcome): Told[] {
   const degreesOfFreedom = rule.degreesOfFreedom ?? Number.POSITIVE_INFINITY;
   const result = { value, standardUncertainty, degreesOfFreedom };
   const standing = standingOf(result, [a.low, a.high], risk);
-  return [
-    {
-      id,
-      rule,
-      value,
-      standing,
-      room: Math.min(
-        roomBelow(value, a.high, c.high),
-        roomBelow(-value, negated(a.low), negated(c.low)),
-      ),
-    },
-  ];
+  const good = quantities.get(rule.quantity)?.good ?? 'low';
+  const ideal = good === 'low' ? 0 : good;
+  const room = Math.min(
+    roomBelow(value, a.high, c.high, ideal),
+    ideal === 'high'
+      ? roomBelow(-value, negated(a.low), negated(c.low), ideal)
+      : roomBelow(-value, negated(a.low), negated(c.low), -ideal),
+  );
+  return [{ id, rule, value, standing, room }];
 }
 
 const negated = (limit: number | null) => (limit === null ? null : -limit);
 
-function roomBelow(value: number, a: number | null, c: number | null): number {
+function roomBelow(value: number, a: number | null, c: number | null, ideal: number | 'high') {
   if (a === null || c === null) return Number.POSITIVE_INFINITY;
-  return (a - value) / (Math.abs(c - a) || 1);
+  const inside = value <= a && ideal !== 'high';
+  return (a - value) / ((inside ? a - ideal : Math.abs(c - a)) || 1);
 }
 
 /** The topic's words for the side of ideal on which the value lies. */
