@@ -22,6 +22,7 @@ const throwawaySettings = [
  */
 export async function startMariadb({ folder, password, port: wanted = 0, throwaway = false }) {
   mkdirSync(folder, { recursive: true });
+  await endLeftOver(folder);
   const data = join(folder, 'data');
   if (!existsSync(join(data, 'mysql'))) await install(data);
   // A socket's path is limited to 107 characters, and a checkout may lie deep: the socket lives in the temporary folder.
@@ -85,6 +86,26 @@ export async function startThrowawayMariadb() {
 
 export function randomPassword() {
   return randomBytes(24).toString('hex');
+}
+
+/** A server that outlived a killed start command still holds the data: it is asked to end. */
+async function endLeftOver(folder) {
+  const file = join(folder, 'mariadb.pid');
+  if (!existsSync(file)) return;
+  const pid = Number(readFileSync(file, 'utf8'));
+  const ours = () => {
+    try {
+      const words = readFileSync(`/proc/${pid}/cmdline`, 'utf8').split('\0');
+      return words.includes(`--datadir=${join(folder, 'data')}`);
+    } catch {
+      return false;
+    }
+  };
+  if (!ours()) return;
+  process.kill(pid, 'SIGTERM');
+  for (const deadline = Date.now() + 20_000; ours() && Date.now() < deadline; ) {
+    await new Promise((resolve) => setTimeout(resolve, 50));
+  }
 }
 
 async function install(data) {

@@ -1,4 +1,4 @@
-import { type DataType, QueryTypes } from 'sequelize';
+import { type DataType, type Model, type ModelStatic, QueryTypes } from 'sequelize';
 import { afterAll, beforeAll, expect, inject, test } from 'vitest';
 import { connect } from '@/models/db';
 import { migrator } from '@/scripts/lib/migrate';
@@ -46,7 +46,7 @@ const nameOf = (type: DataType) =>
 function expected(): Map<string, { type: string; nullable: boolean }> {
   const wanted = new Map<string, { type: string; nullable: boolean }>();
   const { sequelize: _, ...models } = db;
-  for (const model of Object.values(models)) {
+  for (const model of Object.values(models) as ModelStatic<Model>[]) {
     for (const [name, attribute] of Object.entries(model.getAttributes())) {
       const type = nameOf(attribute.type);
       wanted.set(`${model.getTableName()}.${name}`, {

@@ -114,6 +114,21 @@ test('lanes work on as many jobs at once as they are wide, wake on a new job and
   expect(most).toBe(2);
 });
 
+test('a job that is in hand when the process ends is given back and does not count as an attempt', async () => {
+  const subjectId = await add();
+  const handler: Handler = {
+    work: (_subject, signal) =>
+      new Promise((_resolve, reject) => {
+        signal.addEventListener('abort', () => reject(signal.reason));
+      }),
+    async failed() {},
+  };
+  const lanes = runLanes([{ kind, handler, width: 1 }], { leaseMs: 60_000, lookMs: 50 });
+  await until(async () => (await db().Job.count({ where: { kind, state: 'running' } })) === 1);
+  await lanes.stop();
+  expect(await claim(kind, 'next', 1000)).toMatchObject({ subjectId, attempts: 1 });
+});
+
 test('after kill -9 of its holder a job is done by another, once', async () => {
   const subjectId = await add();
   const leaseMs = 1500;

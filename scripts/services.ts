@@ -1,0 +1,15 @@
+import { join } from 'node:path';
+import { startMail } from '@/fixtures/fakes/mail';
+import { startStore } from '@/fixtures/fakes/store';
+import { demoPassword, demoPeople } from '@/lib/shared/demo';
+
+// The fakes of store and mail in a process of their own: it tells its parent the addresses, and ends with it.
+const folder = process.argv[2];
+if (!folder || !process.send) throw new Error('Started by scripts/start.mjs with a folder.');
+const store = await startStore(join(folder, 'store'));
+const mail = await startMail(join(folder, 'mail'));
+process.send({ store: store.url, mail: mail.url, demoPassword, demoPeople });
+
+for (const signal of ['SIGTERM', 'disconnect'] as const) {
+  process.once(signal, () => process.exit(0));
+}
