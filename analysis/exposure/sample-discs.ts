@@ -222,16 +222,22 @@ function roundingLeft(step: number, sigma: number): number {
 }
 
 /**
- * What JPEG's rounding of block means leaves in red, green and blue, in codes (YCbCr of ITU-T T.871).
- * Every block of a flat patch is rounded alike, so averaging doesn't help; only noise that survives in the block's mean does.
+ * What JPEG's rounding leaves in red, green and blue of a flat patch, in codes (YCbCr of ITU-T T.871): colours are rounded on the
+ * way in and out, luma and chroma to whole numbers, block means to the tables' steps. All pixels of a flat patch are rounded
+ * alike, so averaging doesn't help; only noise that survives does, and less of it survives in chroma.
  */
 function compressionRounding(frame: Frame, dither: number): [number, number, number] {
   if (!frame.blockStep) return [0, 0, 0];
   const { luma, chroma } = frame.blockStep;
-  const y = roundingLeft(luma, dither / 8);
-  // Chroma blocks mostly stand for 16 × 16 pixels, over which little noise is left.
-  const c = roundingLeft(chroma, dither / 32);
-  return [Math.hypot(y, 1.402 * c), Math.hypot(y, 0.344 * c, 0.714 * c), Math.hypot(y, 1.772 * c)];
+  const chromaDither = dither / (frame.chromaHalved ? 12 : 5);
+  const rgb = roundingLeft(1, dither);
+  const y = Math.hypot(roundingLeft(1, dither), roundingLeft(luma, dither / 8));
+  const c = Math.hypot(roundingLeft(1, chromaDither), roundingLeft(chroma, chromaDither));
+  return [
+    Math.hypot(rgb, y, 1.402 * c),
+    Math.hypot(rgb, y, 0.344 * c, 0.714 * c),
+    Math.hypot(rgb, y, 1.772 * c),
+  ];
 }
 
 function slopeAt(toLinear: Float32Array, code: number): number {
