@@ -1,0 +1,142 @@
+import type { SuiteName } from './suites.ts';
+
+/** Quantities as samples are taken of them; see samples.ts. */
+export type QuantityName =
+  | 'rings'
+  | 'mtf50'
+  | 'fringe'
+  | 'fringe across'
+  | 'fringe scale'
+  | 'exposure.bias'
+  | 'tone.contrast'
+  | 'colour.saturation'
+  | 'noise.snr'
+  | 'shading.corner'
+  | 'distortion.corner';
+
+/** One line of the printed table. */
+export interface Row {
+  readonly name: string;
+  readonly quantity: QuantityName;
+  readonly suites: readonly SuiteName[];
+  readonly unit: string;
+  /** What measurements.md allows; a plain number there is the largest error of all samples. None: told, not judged. */
+  readonly allowed: { readonly median?: number; readonly p95?: number; readonly largest?: number };
+  /** Whether the share of truths within ±2 u is judged (90–99 %). */
+  readonly stated: boolean;
+}
+
+export const rows: readonly Row[] = [
+  {
+    name: 'registration',
+    quantity: 'rings',
+    suites: ['registration'],
+    unit: 'px',
+    allowed: { largest: 0.3 },
+    stated: false,
+  },
+  {
+    name: 'sharpness.mtf50',
+    quantity: 'mtf50',
+    suites: ['clean'],
+    unit: '%',
+    allowed: { median: 1, p95: 3 },
+    stated: true,
+  },
+  {
+    name: 'sharpness.mtf50 at 23 dB',
+    quantity: 'mtf50',
+    suites: ['noisy'],
+    unit: '%',
+    allowed: { p95: 7 },
+    stated: true,
+  },
+  {
+    name: 'fringe, 4:4:4',
+    quantity: 'fringe',
+    suites: ['clean'],
+    unit: 'px',
+    allowed: { median: 0.015, p95: 0.05 },
+    stated: true,
+  },
+  {
+    name: 'fringe, 4:2:0 JPEG 85',
+    quantity: 'fringe',
+    suites: ['subsampled'],
+    unit: 'px',
+    allowed: { p95: 0.12 },
+    stated: true,
+  },
+  {
+    name: 'fringe scales, 4:4:4',
+    quantity: 'fringe scale',
+    suites: ['clean'],
+    unit: '‰',
+    allowed: { largest: 0.05 },
+    stated: true,
+  },
+  {
+    name: 'fringe scales, 4:2:0',
+    quantity: 'fringe scale',
+    suites: ['subsampled'],
+    unit: '‰',
+    allowed: { largest: 0.05 },
+    stated: true,
+  },
+  {
+    name: 'exposure.bias',
+    quantity: 'exposure.bias',
+    suites: ['exposure'],
+    unit: 'EV',
+    allowed: { largest: 0.02 },
+    stated: true,
+  },
+  {
+    name: 'colour.saturation',
+    quantity: 'colour.saturation',
+    suites: ['colour'],
+    unit: '%',
+    allowed: { largest: 1 },
+    stated: true,
+  },
+  {
+    name: 'noise.snr',
+    quantity: 'noise.snr',
+    suites: ['noise'],
+    unit: 'dB',
+    allowed: { largest: 0.5 },
+    stated: true,
+  },
+  {
+    name: 'shading.corner',
+    quantity: 'shading.corner',
+    suites: ['shading'],
+    unit: 'EV',
+    allowed: { largest: 0.03 },
+    stated: true,
+  },
+  {
+    name: 'fringe across the radius, 4:4:4',
+    quantity: 'fringe across',
+    suites: ['clean'],
+    unit: 'px',
+    allowed: {},
+    stated: false,
+  },
+  {
+    name: 'tone.contrast',
+    quantity: 'tone.contrast',
+    suites: ['clean'],
+    unit: '1',
+    allowed: {},
+    stated: false,
+  },
+  {
+    name: 'distortion.corner',
+    quantity: 'distortion.corner',
+    suites: ['clean'],
+    unit: '%',
+    allowed: {},
+    stated: false,
+  },
+];
