@@ -1,18 +1,21 @@
 import { measureFringes } from './chromatic/measure-fringes.ts';
+import type { DiscSample } from './colour/disc-sample.ts';
 import { measureColour } from './colour/measure-colour.ts';
 import { traceEdges } from './edge/trace-edges.ts';
 import { MeasurementError } from './errors.ts';
 import { measureClipping, measureExposure, measureMedian } from './exposure/measure-exposure.ts';
 import { measureFrame } from './exposure/measure-frame.ts';
 import { sampleDiscs } from './exposure/sample-discs.ts';
-import { measureTone, plotTone } from './exposure/tone.ts';
+import { measureTone, plotTone, type ToneResponse } from './exposure/tone.ts';
+import { measureShading, type ShadingResult } from './field/measure-shading.ts';
 import type { Capture, Frame } from './image.ts';
+import { measureNoise } from './noise/measure-noise.ts';
 import { plotDiscs, plotOutline, plotStations } from './plots.ts';
 import type { Analysis, Kind, Metric, Plots, Shape, Warning } from './result.ts';
 import { measureSharpness } from './sharpness/measure-sharpness.ts';
 import { registerTarget } from './target/register.ts';
 import type { Registration } from './target/registration.ts';
-import { warnOfCapture, warnOfGreys, warnOfRegistration } from './warnings.ts';
+import { warnOfCapture, warnOfGreys, warnOfLight, warnOfRegistration } from './warnings.ts';
 
 /** Raised whenever a number can change. */
 export const analysisVersion = '1.0.0';
@@ -102,8 +105,7 @@ function analyseTarget(
   stage: Stage,
 ): Part {
   const frameLight = stage('histograms and clipping', () => measureFrame(frame));
-  const samples = stage('discs', () => sampleDiscs(frame, registration));
-  const tone = stage('tone', () => measureTone(frame, samples));
+  const { samples, tone, shading } = measureLight(frame, registration, stage);
   const metrics: Metric[] = [];
   const warnings: Warning[] = [...warnOfRegistration(frame, registration), ...warnOfGreys(samples)];
   const plots: Plots = {
@@ -138,6 +140,10 @@ function analyseTarget(
   warnings.push(...sharpness.warnings);
   plots.stations = plotStations(frame, registration, sharpness, fringes);
 
+  const noise = stage('noise', () => measureNoise(frame, registration));
+  metrics.push(...noise.metrics, ...shading.metrics);
+  warnings.push(...noise.warnings, ...shading.warnings, ...warnOfLight(shading.metrics));
+  if (shading.plot) plots.shading = shading.plot;
   metrics.push({
     name: 'distortion.corner',
     value: registration.distortion.corner,
@@ -145,6 +151,30 @@ function analyseTarget(
     uncertainty: registration.distortion.uncertainty,
   });
   return { registration: registration.summary, metrics, warnings, plots };
+}
+
+interface Light {
+  samples: DiscSample[];
+  tone: ToneResponse | null;
+  shading: ShadingResult;
+}
+
+/**
+ * Tone response and shading need each other: a first response, blind to shading, is good enough to tell the shading by,
+ * because the greys' order is shuffled round their circle; the second response is then read in even light.
+ */
+function measureLight(frame: Frame, registration: Registration, stage: Stage): Light {
+  const raw = stage('discs', () => sampleDiscs(frame, registration));
+  const blind = stage('tone', () => measureTone(frame, raw));
+  const rough = stage('shading', () => measureShading(frame, registration, blind?.codeToLight));
+  if (!blind) return { samples: raw, tone: null, shading: rough };
+  const samples = raw.map((s) => ({ ...s, light: rough.correctionAt(s.x, s.y) }));
+  const tone = stage('tone, again', () => measureTone(frame, samples));
+  if (!tone) return { samples, tone: blind, shading: rough };
+  const shading = stage('shading, again', () =>
+    measureShading(frame, registration, tone.codeToLight),
+  );
+  return { samples, tone, shading };
 }
 
 function analyseScene(frame: Frame, searched: boolean): Part {

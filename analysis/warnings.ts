@@ -1,13 +1,15 @@
 import type { DiscSample } from './colour/disc-sample.ts';
 import { isGrey } from './exposure/tone.ts';
 import type { Capture, Frame } from './image.ts';
-import type { Warning } from './result.ts';
+import type { Metric, Warning } from './result.ts';
 import type { Registration } from './target/registration.ts';
 
 /** Image pixels a target unit below which edges and discs become short of pixels: the target some 700 px high. Our choice. */
 const fewPixelsPerUnit = 0.78;
 /** Scale at one side of the target over that at the other: about 8° of tilt at a normal angle of view. Our choice. */
 const muchPerspective = 1.12;
+/** Spread of the light in the corners, EV, beyond which lens and lamps can't be told apart. Our choice. */
+const unevenLight = 0.3;
 /** Share of the frame's smaller side by which the field's corners may stick out. */
 const cutOff = 0.02;
 
@@ -87,6 +89,17 @@ export function warnOfGreys(samples: readonly DiscSample[]): Warning[] {
     {
       code: 'greys-clipped',
       message: `Not used because they are clipped: ${clipped.join(', ')}. The tone response ends before them; correct the exposure if they should count.`,
+    },
+  ];
+}
+
+export function warnOfLight(shading: readonly Metric[]): Warning[] {
+  const asymmetry = shading.find(({ name }) => name === 'shading.asymmetry');
+  if (!asymmetry || asymmetry.value <= unevenLight) return [];
+  return [
+    {
+      code: 'uneven-light',
+      message: `The light on the target differs by ${asymmetry.value.toFixed(1)} EV from side to side, which passes for shading of the lens. Set the lamps evenly and photograph again.`,
     },
   ];
 }

@@ -13,24 +13,16 @@ const fewestPixels = 12;
 const trimmedShare = 0.02;
 /** Neighbouring pixels share noise after demosaicing and compression; this many count as one. Common practice, no source. */
 const pixelsPerIndependent = 4;
-/** Light at an image point against the frame's centre. */
-export type LightAt = (x: number, y: number) => number;
-
 /**
  * Reads every disc of the target that lies wholly in the frame.
- * @param lightAt light at an image point against the centre, from the shading; 1 everywhere when left out
- * @returns in the target's order; discs outside the frame or under 12 pixels are left out
+ * @returns in the target's order, `light` 1 until the shading is known; discs outside the frame or under 12 pixels are left out
  */
-export function sampleDiscs(
-  frame: Frame,
-  registration: Registration,
-  lightAt: LightAt = () => 1,
-): DiscSample[] {
+export function sampleDiscs(frame: Frame, registration: Registration): DiscSample[] {
   const reader = createReader(frame);
   const samples: DiscSample[] = [];
   for (const disc of registration.target.discs) {
     const sample = reader(disc, placeDisc(registration, disc));
-    if (sample) samples.push({ ...sample, light: lightAt(sample.x, sample.y) });
+    if (sample) samples.push(sample);
   }
   return samples;
 }
@@ -65,7 +57,7 @@ function createReader(frame: Frame) {
   const histograms = [0, 1, 2].map(() => new Uint32Array(frame.maxCode + 1));
   const weights = luminanceWeights(frame);
 
-  return (disc: Disc, place: PlacedDisc): Omit<DiscSample, 'light'> | null => {
+  return (disc: Disc, place: PlacedDisc): DiscSample | null => {
     const { x, y, halfWidth, halfHeight } = place;
     const inside =
       x - halfWidth >= 0 &&
@@ -93,6 +85,7 @@ function createReader(frame: Frame) {
       x,
       y,
       radius: place.radius,
+      light: 1,
       linear: [red.mean, green.mean, blue.mean],
       uncertainty: [red.uncertainty, green.uncertainty, blue.uncertainty],
       luminance,
@@ -209,7 +202,7 @@ function summarise(
     mean: sum / kept,
     uncertainty: Math.hypot(noise, rounding),
     rounding,
-    clipped: isClipped(histogram, pixels, codeMean, codeSigma, frame.maxCode),
+    clipped: isClipped(histogram, pixels, frame.maxCode),
   };
 }
 
@@ -245,18 +238,13 @@ function slopeAt(toLinear: Float32Array, code: number): number {
   return toLinear[below + 1]! - toLinear[below]!;
 }
 
-/** Within three standard deviations of an end, or with more than one pixel in two hundred at it (254 and over, 1 and under of 255). */
-function isClipped(
-  histogram: Uint32Array,
-  pixels: number,
-  mean: number,
-  sigma: number,
-  maxCode: number,
-): boolean {
+/**
+ * More than one pixel in a hundred at an end (254 and over, 1 and under of 255). Noise figures need a mean three deviations from
+ * the end; a mean doesn't: at one in a hundred it is off by a three-hundredth of the noise.
+ */
+function isClipped(histogram: Uint32Array, pixels: number, maxCode: number): boolean {
   const low = Math.round(maxCode / 255);
-  const high = maxCode - low;
-  if (mean + 3 * sigma >= high || mean - 3 * sigma <= low) return true;
   let atEnds = 0;
   for (let code = 0; code <= low; code++) atEnds += histogram[code]! + histogram[maxCode - code]!;
-  return atEnds > pixels / 200;
+  return atEnds > pixels / 100;
 }
