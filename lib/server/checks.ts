@@ -21,13 +21,21 @@ export async function saveChecks(
   const unit = await openUnit(actor, tag);
   const base = inShop(actor, { unitId: unit.id, byId: actor.userId });
   await change(actor, async (transaction) => {
-    const last = new Map(checks.map((check) => [check.item, check]));
-    for (const check of last.values()) {
-      await db().FunctionCheck.create({ ...base, ...check }, { transaction });
-      if (check.outcome !== 'fail') continue;
-      const text = `${labels.get(check.item)} failed its check${check.note ? `: ${check.note}` : '.'}`;
-      await db().LogEntry.create({ ...base, kind: 'symptom', text }, { transaction });
-    }
+    const last = [...new Map(checks.map((check) => [check.item, check])).values()];
+    await db().FunctionCheck.bulkCreate(
+      last.map((check) => ({ ...base, ...check })),
+      { transaction },
+    );
+    await db().LogEntry.bulkCreate(
+      last
+        .filter((check) => check.outcome === 'fail')
+        .map(({ item, note }) => ({
+          ...base,
+          kind: 'symptom' as const,
+          text: `${labels.get(item)} failed its check${note ? `: ${note}` : '.'}`,
+        })),
+      { transaction },
+    );
     await unit.update({ changedAt: new Date() }, { transaction });
     await record(transaction, actor, 'check.save', ['Unit', unit.id], {
       tag,
