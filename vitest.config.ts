@@ -3,7 +3,7 @@ import { defineConfig } from 'vitest/config';
 
 const root = fileURLToPath(new URL('.', import.meta.url));
 
-// `unit` needs nothing running; `db` gets a throwaway MariaDB and the fakes from its global setup.
+// `unit` needs nothing running; `db` gets a throwaway MariaDB and the fakes; `e2e` the built product on a free port.
 export default defineConfig({
   resolve: {
     alias: { '@': root, 'server-only': fileURLToPath(new URL('tests/empty.ts', import.meta.url)) },
@@ -27,6 +27,16 @@ export default defineConfig({
           globalSetup: ['tests/db/setup.ts'],
           setupFiles: ['tests/db/environment.ts'],
           fileParallelism: false,
+        },
+      },
+      {
+        extends: true,
+        test: {
+          name: 'e2e',
+          include: ['tests/e2e/**/*.test.ts'],
+          globalSetup: ['tests/e2e/setup.ts'],
+          fileParallelism: false,
+          testTimeout: 180_000,
         },
       },
     ],

@@ -29,6 +29,8 @@ export function connect(url: string): Db {
       host: hostname,
       port: Number(port || 3306),
       logging: false,
+      // The connector gives up after one second, which a busy machine may need.
+      dialectOptions: { connectTimeout: 20_000 },
       timezone: '+00:00',
       pool: { max: 8, min: 0, idle: 10_000, acquire: 15_000 },
       define: { charset: 'utf8mb4', collate: 'utf8mb4_unicode_ci', timestamps: false },

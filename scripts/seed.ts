@@ -1,12 +1,9 @@
 import { writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { benchWork, type Cast, measured, outcome, photographs } from '@/fixtures/demo/bring-about';
-import { demoShop, demoUnits } from '@/fixtures/demo/scenario';
+import { openShop } from '@/fixtures/demo/open-shop';
+import { demoUnits } from '@/fixtures/demo/scenario';
 import { db } from '@/lib/server/db';
-import { hashPassword } from '@/lib/server/passwords';
-import type { Actor } from '@/lib/shared/api';
-import { demoPassword, demoPeople } from '@/lib/shared/demo';
-import type { Role } from '@/lib/shared/words';
 
 // Brings the demo shop into being on an empty database, and goes on with it where an earlier start was broken off.
 const folder = process.argv[2];
@@ -29,47 +26,6 @@ if (cast) {
 writeFileSync(join(folder, 'seeded'), new Date().toISOString());
 await db().sequelize.close();
 process.disconnect?.();
-
-/** The shop and its people; null when the database belongs to someone else. */
-async function openShop(): Promise<Cast | null> {
-  const { Shop, User, Membership } = db();
-  const known = await Shop.findOne({ where: { name: demoShop.name } });
-  if (!known && (await Shop.count()) > 0) return null;
-  const passwordHash = await hashPassword(demoPassword);
-  return db().sequelize.transaction(async (transaction) => {
-    const shop = known ?? (await Shop.create(demoShop, { transaction }));
-    const actors = new Map<Role, Actor>();
-    for (const { email, name, role } of demoPeople) {
-      const [user] = await User.findOrCreate({
-        where: { email },
-        defaults: { email, name, passwordHash },
-        transaction,
-      });
-      await Membership.findOrCreate({
-        where: { shopId: shop.id, userId: user.id },
-        defaults: { shopId: shop.id, userId: user.id, role },
-        transaction,
-      });
-      const { id: shopId, name: shopName, currency } = shop;
-      actors.set(role, {
-        userId: user.id,
-        sessionId: '',
-        shopId,
-        shopName,
-        currency,
-        role,
-        name,
-        email,
-      });
-    }
-    const actor = (role: Role) => {
-      const found = actors.get(role);
-      if (!found) throw new Error(`The demo shop has no ${role}.`);
-      return found;
-    };
-    return { owner: actor('owner'), refurbisher: actor('refurbisher'), grader: actor('grader') };
-  });
-}
 
 /** Photographs one unit after the other, and signs each as soon as the server has measured it. */
 async function throughTheTest(cast: Cast): Promise<void> {

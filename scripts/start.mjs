@@ -2,6 +2,7 @@ import { existsSync } from 'node:fs';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { installDebian, installPackages } from './lib/install.mjs';
+import { endRuns, freePort } from './lib/processes.mjs';
 import { seconds, step } from './lib/steps.mjs';
 
 // Plain Node, and nothing but Node's own modules until the packages are installed.
@@ -20,6 +21,7 @@ let ending = null;
 function end(code) {
   ending ??= (async () => {
     if (running.length > 0) console.log('Ending what was started …');
+    endRuns();
     for (const service of running.reverse()) await service.stop();
     process.exit(code);
   })();
@@ -43,7 +45,6 @@ async function main() {
   await step('Packages from npm', () => installPackages(root));
   const { buildIfStale } = await import('./lib/built.mjs');
   const local = await import('./lib/local.mjs');
-  const { freePort } = await import('./lib/processes.mjs');
   const { services, demo } = await startServices(local);
   await step('Tables', () => local.migrate(root, services.DATABASE_URL));
   await step('Build', () => buildIfStale(root));

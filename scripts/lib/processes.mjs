@@ -22,18 +22,41 @@ function listen(port) {
   });
 }
 
+/** Commands under way, each the leader of a group of its own. */
+const underWay = new Set();
+
+/** Ends the commands under way and what they have started. */
+export function endRuns() {
+  for (const child of underWay) {
+    try {
+      process.kill(-child.pid, 'SIGTERM');
+    } catch {
+      // It has just ended by itself.
+    }
+  }
+}
+
 /** Runs a command to its end; rejects with the last lines it wrote when it fails. */
 export function run(command, args, options = {}) {
   return new Promise((resolve, reject) => {
-    const child = spawn(command, args, { ...options, stdio: ['ignore', 'pipe', 'pipe'] });
+    const child = spawn(command, args, {
+      ...options,
+      detached: true,
+      stdio: ['ignore', 'pipe', 'pipe'],
+    });
+    underWay.add(child);
     let output = '';
     const keep = (chunk) => {
       output = (output + chunk).slice(-200_000);
     };
     child.stdout.on('data', keep);
     child.stderr.on('data', keep);
-    child.once('error', reject);
+    child.once('error', (error) => {
+      underWay.delete(child);
+      reject(error);
+    });
     child.once('close', (code) => {
+      underWay.delete(child);
       if (code === 0) resolve(output);
       else reject(new Error(`${command} ended with ${code}:\n${lastLines(output)}`));
     });
