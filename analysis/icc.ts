@@ -1,6 +1,9 @@
-import { bradford, rgbToXyz, whiteD50, whiteD65, xyzToSrgb } from './colour/cie.ts';
+import { bradford, rgbToXyz, whiteD65, xyzToSrgb } from './colour/cie.ts';
 import { multiply } from './colour/matrix.ts';
 import { linearTable } from './colour/srgb.ts';
+
+/** The profile connection space's D50 (ICC.1, 7.2.16), to four decimals as profiles hold it. */
+const pcsWhite = [0.9642, 1, 0.8249] as const;
 
 /** How a file's codes become linear light and its primaries sRGB's; see `Frame`. */
 export interface ColourSpace {
@@ -58,7 +61,7 @@ function readTags(view: DataView, maxCode: number): ProfileReading {
     return { kind: 'unreadable' };
   }
   const toXyz = [0, 1, 2].flatMap((row) => [red[row]!, green[row]!, blue[row]!]);
-  const matrix = multiply(xyzToSrgb, multiply(bradford(whiteD50, whiteD65), toXyz));
+  const matrix = multiply(xyzToSrgb, multiply(bradford(pcsWhite, whiteD65), toXyz));
   return {
     kind: 'matrix',
     space: {
