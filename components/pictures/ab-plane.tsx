@@ -62,28 +62,28 @@ export function AbPlane({
             blue
           </text>
         </g>
-        {colours.map(({ id, reference, measured, rgb, deltaE2000 }) => (
-          <g key={id}>
-            <title>{`${id}: ΔE ${numberText(deltaE2000, 1)}`}</title>
+        <g strokeWidth={2.5} strokeLinecap="round">
+          {colours.map(({ id, reference, measured, rgb }) => (
             <path
+              key={id}
               d={`M${x(reference[1])} ${y(reference[2])}L${x(measured[1])} ${y(measured[2])}`}
-              stroke={`rgb(${rgb.join(' ')})`}
-              strokeWidth={2.5}
-              strokeLinecap="round"
+              stroke={hex(rgb)}
             />
-            <circle
-              cx={x(measured[1])}
-              cy={y(measured[2])}
-              r={6.5}
-              fill={`rgb(${rgb.join(' ')})`}
-              stroke="var(--edge)"
-              strokeWidth={0.75}
-            />
-          </g>
-        ))}
+          ))}
+        </g>
+        <g stroke="var(--edge)" strokeWidth={0.75}>
+          {colours.map(({ id, measured, rgb }) => (
+            <circle key={id} cx={x(measured[1])} cy={y(measured[2])} r={6.5} fill={hex(rgb)} />
+          ))}
+        </g>
       </svg>
     </Picture>
   );
+}
+
+function hex(rgb: readonly number[]): string {
+  const two = (value: number) => Math.round(value).toString(16).padStart(2, '0');
+  return `#${rgb.map(two).join('')}`;
 }
 
 /** The widest chroma drawn, in round tens. */

@@ -23,6 +23,12 @@ export function FrameMap({
   const height = round(frame.height * scale);
   const radius = ringRadius(frame) * scale;
   const factor = hairFactor(frame, (radius * 0.92) / scale);
+  const placed = frame.stations.map((station) => ({
+    ...station,
+    x: round(station.x * scale),
+    y: round(station.y * scale),
+    share: station.mtf50 === null ? null : station.mtf50 / frame.fullCircle,
+  }));
   return (
     <Picture
       className={className}
@@ -38,18 +44,9 @@ export function FrameMap({
         className="block h-auto w-full text-[28px] max-sm:text-[42px]"
       >
         <rect width={drawnWidth} height={height} rx={22} fill="var(--well)" />
-        {frame.stations.map((station) => (
-          <Station
-            key={station.id}
-            station={station}
-            share={station.mtf50 === null ? null : station.mtf50 / frame.fullCircle}
-            x={round(station.x * scale)}
-            y={round(station.y * scale)}
-            radius={radius}
-            hair={factor * scale}
-            height={height}
-          />
-        ))}
+        <Rings stations={placed} radius={radius} />
+        <Hairs stations={placed} radius={radius} by={factor * scale} />
+        <Shares stations={placed} radius={radius} height={height} />
       </svg>
     </Picture>
   );
@@ -81,94 +78,95 @@ function ringRadius({ width, stations }: FramePicture): number {
   return Math.min(width * 0.045, nearest * 0.24);
 }
 
-function Station({
-  station,
-  share,
-  x,
-  y,
-  radius,
-  hair,
-  height,
-}: {
-  station: FramePicture['stations'][number];
-  share: number | null;
-  x: number;
-  y: number;
-  radius: number;
-  hair: number;
-  height: number;
-}) {
-  const width = radius * 0.24;
-  const above = y > height * 0.7;
-  const colour = station.weak ? '#ff8a57' : '#ffffff';
+type Station = FramePicture['stations'][number] & { share: number | null };
+
+/** One path for all arcs of a kind: a station is some thirty bytes in the page. */
+function Rings({ stations, radius }: { stations: readonly Station[]; radius: number }) {
+  const arcs = (weak: boolean) =>
+    stations
+      .filter((station) => station.weak === weak)
+      .map(({ x, y, share }) => (share === null ? '' : arcPath(x, y, radius, share)))
+      .join('');
   return (
-    <g>
-      <circle
-        cx={x}
-        cy={y}
-        r={round(radius)}
-        fill="none"
+    <g fill="none" strokeWidth={round(radius * 0.24)}>
+      <path
+        d={stations.map(({ x, y }) => `${arcPath(x, y, radius, 1)}Z`).join('')}
         stroke="#a8a8a8"
         strokeOpacity={0.55}
-        strokeWidth={round(width)}
       />
-      {share === null ? null : (
-        <path
-          d={arcPath(x, y, radius, share)}
-          fill="none"
-          stroke={colour}
-          strokeWidth={round(width)}
-        />
-      )}
-      <Hair x={x} y={y} to={station.red} by={hair} colour="#ff5a5f" radius={radius} end="disc" />
-      <Hair x={x} y={y} to={station.blue} by={hair} colour="#8fb2ff" radius={radius} end="ring" />
-      <text
-        x={x}
-        y={round(above ? y - radius - width * 1.5 : y + radius + width * 1.5)}
-        dominantBaseline={above ? undefined : 'hanging'}
-        fill={station.weak ? '#ffc9b0' : '#ffffff'}
-        stroke="var(--well)"
-        strokeWidth={6}
-        paintOrder="stroke"
-      >
-        {share === null ? '–' : `${Math.round(share * 100)}\u2009%`}
-      </text>
+      <path d={arcs(false)} stroke="#ffffff" />
+      <path d={arcs(true)} stroke="#ff8a57" />
     </g>
   );
 }
 
-function Hair({
-  x,
-  y,
-  to,
-  by,
-  colour,
+/** Red and blue displacement with a dark casing, so that they show on the grey; a round cap on nothing draws a disc. */
+function Hairs({
+  stations,
   radius,
-  end,
+  by,
 }: {
-  x: number;
-  y: number;
-  to: { x: number; y: number } | null;
-  by: number;
-  colour: string;
+  stations: readonly Station[];
   radius: number;
-  end: 'disc' | 'ring';
+  by: number;
 }) {
-  if (!to) return null;
-  const endX = round(x + to.x * by);
-  const endY = round(y + to.y * by);
-  const width = round(radius * 0.13);
+  const ends = (channel: 'red' | 'blue') =>
+    stations.flatMap(({ x, y, [channel]: to }) =>
+      to ? [{ from: `M${x} ${y}`, at: `${round(x + to.x * by)} ${round(y + to.y * by)}` }] : [],
+    );
+  const lines = (channel: 'red' | 'blue') =>
+    ends(channel)
+      .map(({ from, at }) => `${from}L${at}`)
+      .join('');
+  const dots = (channel: 'red' | 'blue') =>
+    ends(channel)
+      .map(({ at }) => `M${at}h0`)
+      .join('');
+  const width = (share: number) => round(radius * share);
   return (
-    <g stroke={colour} strokeWidth={width} strokeLinecap="round">
-      <path d={`M${x} ${y}L${endX} ${endY}`} stroke="#2b2b2b" strokeWidth={round(width * 1.8)} />
-      <path d={`M${x} ${y}L${endX} ${endY}`} />
-      <circle
-        cx={endX}
-        cy={endY}
-        r={round(radius * (end === 'disc' ? 0.15 : 0.13))}
-        fill={end === 'disc' ? colour : '#2b2b2b'}
-        strokeWidth={end === 'disc' ? 0 : round(width * 0.8)}
+    <g fill="none" strokeLinecap="round" strokeWidth={width(0.15)}>
+      <path
+        d={lines('red') + lines('blue')}
+        stroke="#2b2b2b"
+        strokeOpacity={0.55}
+        strokeWidth={width(0.22)}
       />
+      <path d={lines('red')} stroke="#ff5a5f" />
+      <path d={lines('blue')} stroke="#8fb2ff" />
+      <path d={dots('red')} stroke="#ff5a5f" strokeWidth={width(0.32)} />
+      <path d={dots('blue')} stroke="#8fb2ff" strokeWidth={width(0.36)} />
+      <path d={dots('blue')} stroke="#2b2b2b" strokeWidth={width(0.16)} />
+    </g>
+  );
+}
+
+/** The share of a full circle in figures, under its ring or, low in the frame, above it. */
+function Shares({
+  stations,
+  radius,
+  height,
+}: {
+  stations: readonly Station[];
+  radius: number;
+  height: number;
+}) {
+  const away = radius * 1.36;
+  return (
+    <g fill="#ffffff" stroke="var(--well)" strokeWidth={6} paintOrder="stroke">
+      {stations.map(({ id, x, y, share, weak }) => {
+        const above = y > height * 0.7;
+        return (
+          <text
+            key={id}
+            x={x}
+            y={round(above ? y - away : y + away)}
+            dominantBaseline={above ? undefined : 'hanging'}
+            fill={weak ? '#ffc9b0' : undefined}
+          >
+            {share === null ? '–' : `${Math.round(share * 100)}\u2009%`}
+          </text>
+        );
+      })}
     </g>
   );
 }

@@ -1,17 +1,22 @@
 import type { ReactNode } from 'react';
 import type { ReportContent } from '@/lib/shared/report';
 import { countOf, dayInWords, Fact, Section } from './parts';
+import type { ReportStanding } from './report-page';
+import { OwnPicture } from './sharpness';
 
 /** How the shots were taken. */
 export function Capture({
-  content: { capture, analysisVersion, cautions },
+  content: { capture, analysisVersion, cautions, pictures },
+  base,
 }: {
   content: ReportContent;
+  base: string;
 }) {
+  const view = pictures.find(({ name }) => name === 'view');
   return (
     <div className="grid items-stretch gap-4 sm:grid-cols-2 print:gap-8">
       <Section title="How it was shot">
-        <dl className="grid gap-3 print:gap-1">
+        <dl className="grid gap-3 print:grid-cols-2 print:gap-1">
           <Fact label="When">{dayInWords(capture.testedOn)}</Fact>
           <Fact label="Shots">
             {countOf(capture.shots, 'shot')}, of them {capture.targetShots} of the target
@@ -28,6 +33,7 @@ export function Capture({
             <li key={caution}>{caution}</li>
           ))}
         </ul>
+        {view ? <OwnPicture picture={view} base={base} className="mt-5 print:hidden" /> : null}
       </Section>
     </div>
   );
@@ -36,11 +42,11 @@ export function Capture({
 /** What a buyer can compare: the camera in hand, the frozen data, the original files. */
 export function Checking({
   content,
-  sha256,
+  standing: { sha256, versions },
   base,
 }: {
   content: ReportContent;
-  sha256: string;
+  standing: ReportStanding;
   base: string;
 }) {
   const { unit, originals, version, publishedAt } = content;
@@ -62,6 +68,7 @@ export function Checking({
           </a>
           . The file’s SHA-256 is <Hash text={sha256} />
         </Step>
+        {versions.length > 1 ? <Versions versions={versions} /> : null}
         <Step title="The photographs">
           The seller keeps the original files; ask for one and compare its SHA-256.
           <details className="mt-1 print:hidden">
@@ -79,6 +86,21 @@ export function Checking({
         </Step>
       </ol>
     </Section>
+  );
+}
+
+function Versions({ versions }: { versions: ReportStanding['versions'] }) {
+  return (
+    <Step title="The versions">
+      This unit’s report was published {versions.length} times; the last one stands.
+      <ul className="mt-1 grid gap-1 text-[13px]">
+        {versions.map(({ version, publishedAt, sha256 }) => (
+          <li key={version}>
+            Version {version}, {dayInWords(publishedAt)}: <Hash text={sha256} />
+          </li>
+        ))}
+      </ul>
+    </Step>
   );
 }
 

@@ -17,7 +17,7 @@ export function ColourAndTone({ content }: { content: ReportContent }) {
           title={colourFinding(readings)?.title ?? 'Colours'}
           lead="Each line runs from the colour as printed to the colour as photographed. Further out is stronger."
         >
-          <AbPlane colours={colours} />
+          <AbPlane colours={colours} className="print:mx-auto print:w-[230px]" />
         </Section>
       ) : null}
       {tone.length || histogram.length ? (
@@ -25,7 +25,7 @@ export function ColourAndTone({ content }: { content: ReportContent }) {
           title={exposureFinding(readings)?.title ?? 'Tone'}
           lead="An 18 % grey belongs at code 118 of 255. Each disc is one printed grey."
         >
-          <div className="grid gap-4">
+          <div className="grid gap-4 print:grid-cols-2">
             {tone.length ? <ToneCurve tone={tone} /> : null}
             {histogram.length ? <Histogram bins={histogram} height={104} /> : null}
           </div>

@@ -1,5 +1,4 @@
 import type { ReportContent } from '@/lib/shared/report';
-import { type ModelClass, modelClassWords } from '@/lib/shared/words';
 import { GradeDial } from '../pictures/grade-dial';
 import { countOf, dayInWords, Fact } from './parts';
 
@@ -13,13 +12,12 @@ const letterMeans: Record<ReportContent['grade']['letter'], string> = {
 /** The grade, the sentence, and who stands behind it. */
 export function Hero({ content }: { content: ReportContent }) {
   const { unit, grade, capture, shop } = content;
-  const modelClass = modelClassWords[unit.modelClass as ModelClass] ?? unit.modelClass;
   return (
     <section className="rounded-panel bg-sheet p-7 max-sm:p-5 print:rounded-none print:p-0">
       <div className="grid items-center gap-7 max-sm:gap-4 sm:grid-cols-[1fr_236px]">
         <div className="min-w-0">
           <p className="label">
-            {unit.maker} {unit.model} · {modelClass}
+            {unit.maker} {unit.model} · {unit.modelClass}
           </p>
           <h1 className="mt-2">{content.headline}</h1>
           <p className="mt-3.5 max-w-[32em] text-pretty text-[21px]/[1.35] max-sm:text-[18px]">

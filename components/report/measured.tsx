@@ -46,7 +46,7 @@ function textOf(rule: RuleOutcome, measurements: ReportMeasurement[]): string {
 function Rule({ rule, text }: { rule: RuleOutcome; text: string }) {
   const source = quantities.get(rule.quantity)?.source;
   return (
-    <div className="grid grid-cols-[1fr_auto] items-center gap-x-3.5 gap-y-1 border-line-2 border-t py-2 sm:grid-cols-[210px_150px_1fr] print:py-0.5">
+    <div className="grid break-inside-avoid grid-cols-[1fr_auto] items-center gap-x-3.5 gap-y-1 border-line-2 border-t py-2 sm:grid-cols-[210px_150px_1fr] print:py-0.5">
       <div className="min-w-0">
         <b>{rule.label}</b>
         <span className="block text-[12.5px] text-ink-3">
@@ -72,16 +72,13 @@ function Others({ measurements }: { measurements: ReportMeasurement[] }) {
   return (
     <div className="mt-6 print:mt-2">
       <h3>Measured as well</h3>
-      <dl className="mt-2 gap-x-8 sm:columns-2">
+      <dl className="mt-2 gap-x-8 sm:columns-2 print:columns-3 print:text-[13px] [&>div]:flex [&>div]:break-inside-avoid [&>div]:items-baseline [&>div]:justify-between [&>div]:gap-4 [&>div]:border-line-2 [&>div]:border-t [&>div]:py-1.5 [&_dd]:whitespace-nowrap [&_dd]:font-[560] [&_i]:text-[12.5px] [&_i]:text-ink-3 [&_i]:not-italic print:[&>div]:py-0.5 print:[&_i]:hidden">
         {measurements.map(({ name, zone, label, source, text }) => (
-          <div
-            key={`${label} ${name} ${zone ?? ''} ${text}`}
-            className="flex break-inside-avoid items-baseline justify-between gap-4 border-line-2 border-t py-1.5 print:py-0.5"
-          >
+          <div key={`${label} ${name} ${zone ?? ''} ${text}`}>
             <dt className="min-w-0">
-              {label} <span className="text-[12.5px] text-ink-3">{source}</span>
+              {label} <i>{source}</i>
             </dt>
-            <dd className="whitespace-nowrap font-[560]">{text}</dd>
+            <dd>{text}</dd>
           </div>
         ))}
       </dl>

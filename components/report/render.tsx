@@ -1,5 +1,6 @@
 import type { ReactElement } from 'react';
 import type { ReportContent } from '@/lib/shared/report';
+import { Missing } from './missing';
 import { ReportDocument } from './report-document';
 import type { ReportStanding } from './report-page';
 
@@ -11,4 +12,8 @@ export function renderReport(
   input: { content: ReportContent; standing: ReportStanding; css: string; origin: string },
 ): string {
   return `<!doctype html>${toMarkup(<ReportDocument {...input} />)}`;
+}
+
+export function renderMissing(toMarkup: ToMarkup, css: string): string {
+  return `<!doctype html>${toMarkup(<Missing css={css} />)}`;
 }

@@ -76,11 +76,11 @@ function Checks({ content: { checks, rules } }: { content: ReportContent }) {
   return (
     <Section title={title} className="h-full">
       {checks.length === 0 ? <p className="text-ink-2">No checks are on record.</p> : null}
-      <ul className="-mt-1.5">
+      <ul className="-mt-1.5 print:columns-2">
         {sorted.map(({ label, outcome, note }) => (
           <li
             key={label}
-            className="grid grid-cols-[18px_1fr] gap-2.5 border-line-2 border-t py-1.5 first:border-0 print:py-0.5"
+            className="grid grid-cols-[18px_1fr] gap-2.5 border-line-2 border-t py-1.5 first:border-0 print:break-inside-avoid print:border-0 print:py-0"
           >
             <StateDisc standing={outcomeStanding[outcome]} size={14} className="mt-1" />
             <span className="min-w-0">

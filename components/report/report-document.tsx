@@ -47,6 +47,7 @@ export function ReportDocument({
             <meta property="og:image:alt" content={picture.alt} />
           </>
         ) : null}
+        <script type="application/ld+json">{linkedData(content, url)}</script>
         {standing.withdrawn ? <meta name="robots" content="noindex" /> : null}
         {/* Our own compiled stylesheet: nothing of a report ever reaches it. */}
         <style>{css}</style>
@@ -56,4 +57,27 @@ export function ReportDocument({
       </body>
     </html>
   );
+}
+
+/** What a search engine may know: schema.org's words for a mended camera and the shop's judgement of it. */
+function linkedData(
+  { unit, grade, headline, summary, publishedAt, shop }: ReportContent,
+  url: string,
+) {
+  return JSON.stringify({
+    '@context': 'https://schema.org',
+    '@type': 'Product',
+    name: `${unit.maker} ${unit.model}`,
+    brand: { '@type': 'Brand', name: unit.maker },
+    model: unit.model,
+    itemCondition: 'https://schema.org/RefurbishedCondition',
+    url,
+    review: {
+      '@type': 'Review',
+      name: `Grade ${grade.letter}: ${headline}`,
+      reviewBody: summary,
+      datePublished: publishedAt,
+      author: { '@type': 'Organization', name: shop.name },
+    },
+  });
 }

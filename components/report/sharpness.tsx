@@ -8,8 +8,9 @@ type Picture = ReportContent['pictures'][number];
 
 /** The frame with its stations, the curves, and the unit's own pictures at 100 %. */
 export function Sharpness({ content, base }: { content: ReportContent; base: string }) {
-  const { frame, curves, pictures } = content;
-  if (!frame && curves.length === 0 && pictures.length === 0) return null;
+  const { frame, curves } = content;
+  const crops = content.pictures.filter(({ name }) => name !== 'view');
+  if (!frame && curves.length === 0 && crops.length === 0) return null;
   return (
     <Section
       id="sharpness"
@@ -20,11 +21,11 @@ export function Sharpness({ content, base }: { content: ReportContent; base: str
           : 'The target was not found in enough shots to draw sharpness over the frame.'
       }
     >
-      <div className="grid items-start gap-7 sm:grid-cols-[1.55fr_1fr]">
+      <div className="grid items-start gap-7 sm:grid-cols-[1.3fr_1fr]">
         {frame ? <FrameMap frame={frame} /> : null}
-        <div className="grid min-w-0 gap-4">
+        <div className="grid min-w-0 gap-5">
           {curves.length ? <MtfCurves curves={curves} /> : null}
-          <Crops pictures={pictures} base={base} />
+          <Crops pictures={crops} base={base} />
         </div>
       </div>
     </Section>
@@ -51,25 +52,45 @@ function Crops({ pictures, base }: { pictures: Picture[]; base: string }) {
   if (pictures.length === 0) return null;
   return (
     <div>
-      <div className="flex flex-wrap gap-2.5">
+      <div className="flex flex-wrap items-start gap-3">
         {pictures.map((picture) => (
-          <figure key={picture.name} className="min-w-[130px] flex-1 basis-[130px]">
-            <img
-              src={`${base}/pictures/${picture.name}`}
-              width={picture.width}
-              height={picture.height}
-              alt={picture.alt}
-              loading="lazy"
-              decoding="async"
-              className="h-auto w-full rounded-lg bg-well"
-            />
-            <figcaption className="mt-1 text-[12.5px] text-ink-2">{picture.label}</figcaption>
-          </figure>
+          <OwnPicture
+            key={picture.name}
+            picture={picture}
+            base={base}
+            className="print:max-w-[170px]"
+          />
         ))}
       </div>
-      <p className="label mt-2 text-ink-3">
-        From this camera’s own shots, cut without resizing; open one to see it at 100 %.
+      <p className="label mt-2 print:hidden">
+        From this camera’s own shots, at 100 %: one pixel is one pixel.
       </p>
     </div>
+  );
+}
+
+/** A picture of this unit on the grey it is judged on, with its size kept free while it loads. */
+export function OwnPicture({
+  picture,
+  base,
+  className,
+}: {
+  picture: Picture;
+  base: string;
+  className?: string;
+}) {
+  return (
+    <figure className={className}>
+      <img
+        src={`${base}/pictures/${picture.name}`}
+        width={picture.width}
+        height={picture.height}
+        alt={picture.alt}
+        loading="lazy"
+        decoding="async"
+        className="h-auto max-w-full rounded-lg bg-well"
+      />
+      <figcaption className="mt-1 text-[12.5px] text-ink-2">{picture.label}</figcaption>
+    </figure>
   );
 }

@@ -1,6 +1,9 @@
+import { quantities } from '@/analysis/quantities';
 import type { Plots, StationPlot } from '@/analysis/result';
 import { targets } from '@/analysis/target/target';
+import { withDoubt } from '@/lib/shared/numbers';
 import type { ReportContent, RuleOutcome } from '@/lib/shared/report';
+import { functionCheckItems } from '@/lib/shared/words';
 
 /** An invented unit, by hand: every number here is made up to exercise the drawings. */
 export const size = { width: 4000, height: 3000 };
@@ -239,7 +242,23 @@ const seeds: RuleSeed[] = [
   },
 ];
 
-export const rules = seeds.map(rule);
+export const rules = [...seeds, ...seeds.slice(1, 5)].map(rule);
+
+/** Numbers that no rule judges, to fill the list as a real run does. */
+const alsoMeasured: ReportContent['measurements'] = [...quantities.values()]
+  .slice(2, 24)
+  .filter(({ name }) => name !== 'colour.saturation')
+  .map(({ name, label, source, unit, decimals }, index) => ({
+    name,
+    zone: null,
+    label,
+    source,
+    text: withDoubt(index * 1.7 - 6, 0.1, unit, decimals),
+    value: index * 1.7 - 6,
+    expanded: 0.1,
+    unit,
+    n: 3,
+  }));
 
 const hash = (digit: string) => digit.repeat(64);
 
@@ -254,7 +273,7 @@ export const content: ReportContent = {
     tag: 'ML-0042',
     maker: 'Halvard Optik',
     model: 'P5',
-    modelClass: 'small-sensor-compact',
+    modelClass: 'small-sensor compact',
     serialEnding: '7K31',
     accessories: ['battery', 'charger', 'wrist strap'],
   },
@@ -312,18 +331,11 @@ export const content: ReportContent = {
     ],
     parts: ['Display assembly, same part as the old one: compared'],
   },
-  checks: [
-    { label: 'Display', outcome: 'pass', note: 'new' },
-    { label: 'Every button and wheel', outcome: 'pass', note: null },
-    { label: 'Every menu function', outcome: 'pass', note: null },
-    { label: 'Zoom, end to end', outcome: 'pass', note: null },
-    { label: 'Autofocus, near', outcome: 'pass', note: null },
-    { label: 'Autofocus, far', outcome: 'pass', note: null },
-    { label: 'Flash', outcome: 'fail', note: 'fires, but only at full power' },
-    { label: 'Viewfinder', outcome: 'not-fitted', note: null },
-    { label: 'Card slot', outcome: 'pass', note: null },
-    { label: 'Video with sound', outcome: 'pass', note: null },
-  ],
+  checks: functionCheckItems.map(({ id, label }) => ({
+    label,
+    outcome: id === 'flash' ? 'fail' : id === 'viewfinder' ? 'not-fitted' : 'pass',
+    note: id === 'flash' ? 'fires, but only at full power' : id === 'display' ? 'new' : null,
+  })),
   rules,
   measurements: [
     {
@@ -359,6 +371,7 @@ export const content: ReportContent = {
       unit: 'ΔE00',
       n: 3,
     },
+    ...alsoMeasured,
   ],
   frame: {
     ...size,
@@ -399,18 +412,25 @@ export const content: ReportContent = {
   histogram,
   pictures: [
     {
-      name: 'crop-C.jpg',
-      label: 'Middle',
-      width: 300,
-      height: 225,
-      alt: 'The square in the middle of the frame at 100 %',
+      name: 'view',
+      label: 'The test target as this camera saw it',
+      width: 1200,
+      height: 900,
+      alt: 'The printed test target',
     },
     {
-      name: 'crop-SE.jpg',
-      label: 'Lower right',
+      name: 'middle',
+      label: 'Middle',
       width: 300,
-      height: 225,
-      alt: 'The square in the lower right corner at 100 %, visibly softer',
+      height: 300,
+      alt: 'A dark square on grey from the middle of the picture, at full size',
+    },
+    {
+      name: 'weakest-corner',
+      label: 'Weakest corner, lower right',
+      width: 300,
+      height: 300,
+      alt: 'The same square in the lower right corner, at full size',
     },
   ],
   capture: {
@@ -439,7 +459,7 @@ export const extreme: ReportContent = {
     ...content.unit,
     maker: 'Vereinigte Feinmechanische Werkstätten Łódź',
     model: 'Superpanorama Reflex Automatic 2000 Professional',
-    modelClass: 'interchangeable-lens',
+    modelClass: 'interchangeable-lens camera',
     accessories: [],
   },
   grade: {

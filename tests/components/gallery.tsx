@@ -35,14 +35,15 @@ if (galleryCss) {
 }
 
 const css = readFileSync(reportCss, 'utf8');
+const first = { version: 1, publishedAt: content.publishedAt, sha256: 'c'.repeat(64) };
 const reports = {
-  report: { content, standing: { sha256: 'c'.repeat(64), withdrawn: null, latestVersion: 1 } },
+  report: { content, standing: { sha256: 'c'.repeat(64), withdrawn: null, versions: [first] } },
   'report-extreme': {
     content: extreme,
     standing: {
       sha256: 'd'.repeat(64),
       withdrawn: { at: '2026-04-02T09:00:00.000Z', reason: 'The buyer found a crack in the lens.' },
-      latestVersion: 2,
+      versions: [first, { ...first, version: 2 }],
     },
   },
 };
