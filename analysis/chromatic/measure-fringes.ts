@@ -3,7 +3,7 @@ import type { Frame, Point } from '../image.ts';
 import type { Metric } from '../result.ts';
 import type { Registration } from '../target/registration.ts';
 import { displacementBetween, type EdgeDisplacement } from './displacement.ts';
-import { type Displaced, fitMagnification } from './fit-magnification.ts';
+import { type Displaced, type FieldFit, fieldAt, fieldVariance, fitField } from './fit-field.ts';
 
 export interface FringeResult {
   readonly metrics: Metric[];
@@ -12,25 +12,38 @@ export interface FringeResult {
   readonly blue: ReadonlyMap<string, Point>;
 }
 
-/** What averaging doesn't lessen: rounding, the chroma grid of JPEG. px. Found on rendered scenes. */
+/** What averaging over pixels doesn't lessen, px. Found on rendered scenes without compression. */
 const floor = 0.004;
+/** Share of a displacement that compression swallows or adds: it drops faint colour beside an edge. Found on rendered scenes. */
+const swallowed = { full: 0.035, halved: 0.06 };
+/** Scatter of the stations, px, at which compression is taken to swallow that share; without compression there is none. */
+const fullScatter = 0.015;
+/** How far a lens's displacement may depart from a smooth field at one station, px. Our choice. */
+const roughness = 0.04;
+/** Fewest stations that a smooth field is drawn through. */
+const fewestStations = 6;
 
 /**
  * Displacement of the red and the blue image against the green (following ISO 19084), px.
  * Per station from its square's four edges: `value` outward along the radius from the frame's centre, `tangential` across it,
  * clockwise as seen; zone `corners` is the value of the corner station where it is largest. `redScale` and `blueScale` (‰) and
  * `fringe.shift` (px) come from one weighted fit over all stations, displacement = shift + scale · position about the frame's centre.
+ * Where compression has scattered the stations, each is drawn toward a smooth field through all of them as far as its doubt allows.
  * It is the displacement in the picture: a camera that raises saturation raises it alike.
  */
 export function measureFringes(
   frame: Frame,
   registration: Registration,
   traces: Traces,
+  chromaHalved: boolean,
 ): FringeResult {
-  const red = displacements(registration, traces, 'red');
-  const blue = displacements(registration, traces, 'blue');
+  const share = chromaHalved ? swallowed.halved : swallowed.full;
+  const rawRed = displacements(registration, traces, 'red', chromaHalved);
+  const rawBlue = displacements(registration, traces, 'blue', chromaHalved);
+  const red = settle(frame, rawRed, share);
+  const blue = settle(frame, rawBlue, share);
   const metrics = [...stationMetrics(frame, red, 'red'), ...stationMetrics(frame, blue, 'blue')];
-  metrics.push(...fieldMetrics(frame, red, blue));
+  metrics.push(...fieldMetrics(frame, rawRed, rawBlue, share));
   return { metrics, red: vectors(red), blue: vectors(blue) };
 }
 
@@ -42,14 +55,14 @@ function displacements(
   registration: Registration,
   traces: Traces,
   colour: 'red' | 'blue',
+  chromaHalved: boolean,
 ): Displaced[] {
   const displaced: Displaced[] = [];
   for (const { id, x, y } of registration.target.stations) {
     const edges = traces.edges.filter((e) => e.station === id);
     const found: { edge: EdgeTrace; by: EdgeDisplacement }[] = [];
     for (const edge of edges) {
-      const other = edge[colour];
-      const by = other && displacementBetween(edge.green, other);
+      const by = displacementBetween(edge, colour, chromaHalved);
       if (by) found.push({ edge, by });
     }
     const vector = combineEdges(found);
@@ -86,6 +99,44 @@ function combineEdges(
   };
 }
 
+/** Adds the scatter that compression causes to each station's doubt, and draws the station toward the smooth field by it. */
+function settle(frame: Frame, displaced: readonly Displaced[], share: number): Displaced[] {
+  const fit =
+    displaced.length < fewestStations
+      ? null
+      : fitField(displaced, middleOf(frame), reachOf(frame), true);
+  return displaced.map((d) => {
+    if (!fit) {
+      const swallow = share ** 2;
+      const [xx, xy, yy] = d.covariance;
+      return { ...d, covariance: [xx + swallow * d.x ** 2, xy, yy + swallow * d.y ** 2] };
+    }
+    const swallow = (share * compression(fit)) ** 2;
+    const field = fieldAt(fit, d.at);
+    const prior = roughness ** 2 + fieldVariance(fit, d.at);
+    const vx = d.covariance[0] + fit.extraVariance;
+    const vy = d.covariance[2] + fit.extraVariance;
+    const x = field.x + ((d.x - field.x) * prior) / (prior + vx);
+    const y = field.y + ((d.y - field.y) * prior) / (prior + vy);
+    const xx = (vx * prior) / (prior + vx) + swallow * x * x;
+    const yy = (vy * prior) / (prior + vy) + swallow * y * y;
+    return { ...d, x, y, covariance: [xx, d.covariance[1], yy] };
+  });
+}
+
+/** 0 … 1: how far the stations' scatter speaks of lossy compression. */
+function compression(fit: FieldFit): number {
+  return Math.min(1, Math.sqrt(fit.extraVariance) / fullScatter);
+}
+
+function middleOf(frame: Frame): Point {
+  return { x: frame.width / 2, y: frame.height / 2 };
+}
+
+function reachOf(frame: Frame): number {
+  return Math.hypot(frame.width, frame.height) / 2;
+}
+
 function stationMetrics(
   frame: Frame,
   displaced: readonly Displaced[],
@@ -117,10 +168,14 @@ function alongRadius(frame: Frame, d: Displaced, colour: 'red' | 'blue'): Metric
   };
 }
 
+/** Doubt of a magnification that no number of stations lessens, ‰. */
+const scaleFloor = 0.004;
+
 function fieldMetrics(
   frame: Frame,
   red: readonly Displaced[],
   blue: readonly Displaced[],
+  share: number,
 ): Metric[] {
   const metrics: Metric[] = [];
   const shifts: { value: number; uncertainty: number }[] = [];
@@ -128,11 +183,17 @@ function fieldMetrics(
     ['fringe.redScale', red],
     ['fringe.blueScale', blue],
   ] as const) {
-    const fit = fitMagnification(displaced, { x: frame.width / 2, y: frame.height / 2 });
+    const fit = fitField(displaced, middleOf(frame), reachOf(frame), false);
     if (!fit) continue;
-    const { permille, shift } = fit;
-    metrics.push({ name, value: permille.value, unit: '‰', uncertainty: permille.uncertainty });
-    shifts.push(shift);
+    const { coefficients, covariance } = fit;
+    const swallow = share * compression(fit);
+    const value = 1000 * coefficients[2]!;
+    const noise = 1000 * Math.sqrt(covariance[8]!);
+    const uncertainty = Math.hypot(noise, scaleFloor, swallow * value);
+    metrics.push({ name, value, unit: '‰', uncertainty });
+    const shift = Math.hypot(coefficients[0]!, coefficients[1]!);
+    const doubt = Math.hypot(Math.sqrt(covariance[0]!), floor, swallow * shift);
+    shifts.push({ value: shift, uncertainty: doubt });
   }
   const largest = shifts.toSorted((a, b) => b.value - a.value)[0];
   if (largest) metrics.push({ name: 'fringe.shift', ...largest, unit: 'px' });

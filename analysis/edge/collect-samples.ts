@@ -56,16 +56,10 @@ export function collectSamples(
   reach: number,
   samples: Samples,
 ): void {
-  const { width, height, data, maxCode } = frame;
+  const { data, maxCode } = frame;
   const [redTable, greenTable, blueTable] = tables;
-  const { middle, length, slope, sagitta, outward } = placed;
-  const vertical = placed.edge === 'vertical';
-  const middleA = vertical ? middle.y : middle.x;
-  const middleB = vertical ? middle.x : middle.y;
-  const strideA = vertical ? width * 3 : 3;
-  const strideB = vertical ? 3 : width * 3;
-  const endA = vertical ? height : width;
-  const endB = vertical ? width : height;
+  const { length, slope, sagitta, outward } = placed;
+  const { middleA, middleB, strideA, strideB, endA, endB } = axesOf(frame, placed);
   const cosine = 1 / Math.hypot(1, slope);
   const halfChord = (length / 2) * cosine;
   const halfLength = usableHalfLength(length, blur);
@@ -112,6 +106,21 @@ export function collectSamples(
   samples.count = count;
   samples.halfLength = halfLength;
   samples.clipped = count > 0 ? clipped / count : 0;
+}
+
+/** Where and how far apart pixels lie along the edge (a) and across it (b). */
+function axesOf({ width, height }: Frame, { edge, middle }: PlacedEdge) {
+  const down = { stride: width * 3, end: height, middle: middle.y };
+  const right = { stride: 3, end: width, middle: middle.x };
+  const [a, b] = edge === 'vertical' ? [down, right] : [right, down];
+  return {
+    middleA: a.middle,
+    middleB: b.middle,
+    strideA: a.stride,
+    strideB: b.stride,
+    endA: a.end,
+    endB: b.end,
+  };
 }
 
 /** The corners' own blur reaches along the edge; a small square gives up part of that distance to keep pixels. */

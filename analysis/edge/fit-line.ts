@@ -14,6 +14,8 @@ export interface LineFit {
   bend: number;
   /** Standard deviation of the residuals, same unit as the light. */
   residual: number;
+  /** Standard uncertainty of `shift` if the residuals are independent, px. */
+  shiftUncertainty: number;
 }
 
 const parameters = 6;
@@ -39,7 +41,16 @@ export function fitLine(samples: Samples, channel: 0 | 1 | 2, shape?: LineFit): 
 }
 
 function startingFit(samples: Samples, light: Float32Array): LineFit | null {
-  const fit = { low: 0, step: 0, sigma: 1, shift: 0, tilt: 0, bend: 0, residual: 0 };
+  const fit = {
+    low: 0,
+    step: 0,
+    sigma: 1,
+    shift: 0,
+    tilt: 0,
+    bend: 0,
+    residual: 0,
+    shiftUncertainty: 0,
+  };
   return levels(samples, light, fit) ? fit : null;
 }
 
@@ -108,6 +119,7 @@ function improve(
   fit.residual = Math.sqrt(squares / Math.max(1, used - parameters));
   steady(used, step, freeShape);
   if (!solveSpd(normal, right)) return null;
+  fit.shiftUncertainty = fit.residual * Math.sqrt(normal[3 * parameters + 3]!);
   return advance(fit);
 }
 

@@ -30,6 +30,8 @@ const skewSpread = 0.3;
 const slopeSpread = 0.05;
 /** Below this, rounding to codes rules and the noise estimate has no meaning. */
 const leastNoise = 2e-4;
+/** Neighbouring bins share JPEG's errors, so that fewer of them are independent than there are. Found on rendered scenes. */
+const clumping = 1.2;
 
 /** @returns null when the profiles hold too little to fit. */
 export function fitProfile(profiles: readonly Profile[], sigma: number): ProfileFit | null {
@@ -45,7 +47,7 @@ export function fitProfile(profiles: readonly Profile[], sigma: number): Profile
   for (let pass = 0; pass < 3; pass++) {
     solved = solve(system, n, widths.length, shared, noise);
     if (!solved) return null;
-    noise = Math.max(leastNoise, Math.sqrt(solved.squares / (system.rows - 0.7 * n)));
+    noise = Math.max(leastNoise, clumping * Math.sqrt(solved.squares / (system.rows - 0.7 * n)));
   }
   if (!solved) return null;
   const covariance = new Float64Array(shared * shared);

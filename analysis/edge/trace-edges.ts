@@ -29,7 +29,10 @@ export interface ChannelTrace {
   readonly profile: Profile;
   /** Position along the normal toward growing x (or y), px, from an arbitrary zero shared by the channels of this edge. */
   readonly shift: number;
+  /** Standard uncertainty of `shift` from the pixels' noise, px. */
+  readonly shiftUncertainty: number;
   readonly sigma: number;
+  /** Standard deviation of a pixel about the fitted step, over the step. */
   readonly residual: number;
 }
 
@@ -58,6 +61,8 @@ export interface Traces {
 
 /** Largest share of clipped pixels about an edge: at 2 % the profile's plateau is already bent. Our choice. */
 const mostClipped = 0.02;
+/** JPEG spreads halved chroma over its blocks of 16 px; what it moved across an edge has to be collected again. px. */
+const chromaReach = 20;
 /** Fewest pixels about an edge. Our choice: below this the fit's own uncertainty passes 10 %. */
 const fewestPixels = 80;
 
@@ -66,14 +71,21 @@ const fewestPixels = 80;
  * length (with the bend that lens distortion gives it), and every pixel is projected along it into sub-pixel bins.
  * Profiles are kept in the picture's directions, rising: a falling edge is turned upside down, so that the two parallel edges of a
  * square see the same line-spread function.
+ * @param chromaHalved  the file keeps colour at half the resolution: profiles then reach further, see chromatic/
  */
-export function traceEdges(frame: Frame, registration: Registration, tables: LightTables): Traces {
+export function traceEdges(
+  frame: Frame,
+  registration: Registration,
+  tables: LightTables,
+  chromaHalved: boolean,
+): Traces {
+  const least = chromaHalved ? chromaReach : 0;
   const samples = createSamples();
   const edges: EdgeTrace[] = [];
   const refused: { station: string; edge: Edge; reason: 'clipped' | 'faint' | 'small' }[] = [];
   let blur = 1;
   for (const placed of placeEdges(registration)) {
-    const traced = traceEdge(frame, tables, placed, blur, samples);
+    const traced = traceEdge(frame, tables, placed, blur, least, samples);
     if (typeof traced === 'string') {
       refused.push({ station: placed.station, edge: placed.edge, reason: traced });
       continue;
@@ -89,17 +101,18 @@ function traceEdge(
   tables: LightTables,
   placed: PlacedEdge,
   expectedBlur: number,
+  least: number,
   samples: Samples,
 ): EdgeTrace | 'clipped' | 'faint' | 'small' {
   let blur = expectedBlur;
-  collectSamples(frame, tables, placed, blur, reachOf(blur), samples);
+  collectSamples(frame, tables, placed, blur, reachOf(blur, least), samples);
   if (samples.count < fewestPixels) return 'small';
   if (samples.clipped > mostClipped) return 'clipped';
   let green = fitLine(samples, 1);
   if (!green) return 'faint';
   if (Math.abs(green.sigma - blur) > 0.25 * blur) {
     blur = green.sigma;
-    collectSamples(frame, tables, placed, blur, reachOf(blur), samples);
+    collectSamples(frame, tables, placed, blur, reachOf(blur, least), samples);
     if (samples.count < fewestPixels) return 'small';
     green = fitLine(samples, 1);
   }
@@ -114,39 +127,40 @@ function traceEdge(
       ? { x: scale, y: -placed.slope * scale }
       : { x: -placed.slope * scale, y: scale },
     length: placed.length,
-    red: traceChannel(samples, 0, green),
-    green: {
-      profile: binSamples(samples, 1, green),
-      shift: green.shift,
-      sigma: green.sigma,
-      residual: green.residual / green.step,
-    },
-    blue: traceChannel(samples, 2, green),
+    red: traceChannel(samples, 0, green, least),
+    green: describe(samples, 1, green, least),
+    blue: traceChannel(samples, 2, green, least),
   };
 }
 
 /** Far enough for the wide halo of a camera's sharpening; see fit-profile.ts. */
-function reachOf(blur: number): number {
-  return Math.min(24, 5 * blur + 8);
+function reachOf(blur: number, least: number): number {
+  return Math.min(24, Math.max(least, 5 * blur + 8));
 }
 
-function traceChannel(samples: Samples, channel: 0 | 2, green: LineFit): ChannelTrace | null {
+function traceChannel(
+  samples: Samples,
+  channel: 0 | 2,
+  green: LineFit,
+  least: number,
+): ChannelTrace | null {
   const fit = fitLine(samples, channel, green);
   if (!fit || fit.step < 3 * fit.residual) return null;
-  return {
-    profile: binSamples(samples, channel, fit),
-    shift: fit.shift,
-    sigma: fit.sigma,
-    residual: fit.residual / fit.step,
-  };
+  return describe(samples, channel, fit, least);
 }
 
-function binSamples(samples: Samples, channel: 0 | 1 | 2, fit: LineFit): Profile {
+function describe(samples: Samples, channel: 0 | 1 | 2, fit: LineFit, least: number): ChannelTrace {
+  const { shift, shiftUncertainty, sigma, residual, step } = fit;
+  const profile = binSamples(samples, channel, fit, least);
+  return { profile, shift, shiftUncertainty, sigma, residual: residual / step };
+}
+
+function binSamples(samples: Samples, channel: 0 | 1 | 2, fit: LineFit, least: number): Profile {
   const { distance, along, count } = samples;
   const light = samples.light[channel];
   const { low, shift, tilt, bend } = fit;
   const gain = 1 / fit.step;
-  const reach = reachOf(fit.sigma);
+  const reach = reachOf(fit.sigma, least);
   const bins = Math.ceil(2 * reach * binsPerPixel);
   const distanceSum = new Float64Array(bins);
   const lightSum = new Float64Array(bins);

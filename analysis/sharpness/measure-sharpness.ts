@@ -126,8 +126,8 @@ function sharpnessOf(fit: ProfileFit, edge: Edge, mtf50: Estimate): EdgeSharpnes
   return {
     edge,
     mtf50: widened(mtf50, systematic * mtf50.value),
-    mtf10: mtf10 && widened(mtf10, 2 * systematic * mtf10.value),
-    nyquist: widened(responsePercent(fit, 0.5), 0.5),
+    mtf10: mtf10 && widened(mtf10, 0.02 * mtf10.value),
+    nyquist: widened(responsePercent(fit, 0.5), 1),
     rise: widened(riseDistance(fit), 2 * systematic * riseDistance(fit).value),
     overshoot: widened(overshootPercent(fit), 0.2),
   };
