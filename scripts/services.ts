@@ -2,6 +2,7 @@ import { join } from 'node:path';
 import { startMail } from '@/fixtures/fakes/mail';
 import { startStore } from '@/fixtures/fakes/store';
 import { demoPassword, demoPeople } from '@/lib/shared/demo';
+import { endLeftOver } from './lib/mariadb.mjs';
 
 // The fakes of store and mail in a process of their own: it tells its parent the addresses, and ends with it.
 const folder = process.argv[2];
@@ -10,6 +11,6 @@ const store = await startStore(join(folder, 'store'));
 const mail = await startMail(join(folder, 'mail'));
 process.send({ store: store.url, mail: mail.url, demoPassword, demoPeople });
 
-for (const signal of ['SIGTERM', 'disconnect'] as const) {
-  process.once(signal, () => process.exit(0));
-}
+process.once('SIGTERM', () => process.exit(0));
+// The start command was killed: its database must not outlive it.
+process.once('disconnect', () => endLeftOver(join(folder, 'database')).then(() => process.exit(0)));

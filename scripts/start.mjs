@@ -1,5 +1,5 @@
 import { existsSync } from 'node:fs';
-import { join } from 'node:path';
+import { join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { installDebian, installPackages } from './lib/install.mjs';
 import { endRuns, freePort } from './lib/processes.mjs';
@@ -7,7 +7,7 @@ import { seconds, step } from './lib/steps.mjs';
 
 // Plain Node, and nothing but Node's own modules until the packages are installed.
 const root = fileURLToPath(new URL('..', import.meta.url)).replace(/\/$/, '');
-const folder = join(root, 'var');
+const folder = resolve(root, process.env.DATA ?? 'var');
 const begun = performance.now();
 const mariadbPackages = {
   mariadbd: 'mariadb-server-core',

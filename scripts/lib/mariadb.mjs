@@ -89,7 +89,7 @@ export function randomPassword() {
 }
 
 /** A server that outlived a killed start command still holds the data: it is asked to end. */
-async function endLeftOver(folder) {
+export async function endLeftOver(folder) {
   const file = join(folder, 'mariadb.pid');
   if (!existsSync(file)) return;
   const pid = Number(readFileSync(file, 'utf8'));
