@@ -21,30 +21,34 @@ const blurWidths = [
   [5, 7, 11, 17],
 ];
 const leastAnswer = 0.03; // of the local mean; a station gives 0.08 and more, sensor noise less than 0.01
-const mostPeaks = 600;
+const mostPeaks = 500;
 const rayCount = 32;
 
 /** Stations in a plane of codes, at any scale and rotation; also some other things, which the pattern of all of them weeds out. */
 export function findStations(plane: Plane): StationCandidate[] {
   const candidates: StationCandidate[] = [];
   for (const peak of findPeaks(plane)) {
-    if (!hasLighterRim(plane, peak)) continue;
+    if (candidates.some((found) => liesIn(peak, found))) continue;
     const found = measureSquare(plane, peak, peak.deviation / bestDeviation);
     if (found && !candidates.some((other) => areSame(found, other))) candidates.push(found);
   }
   return candidates;
 }
 
-/** A quick look: lighter than the middle all round at the pad's distance. */
+/** A quick look: lighter than the middle all round, where the pad is even if the peak's scale is a quarter off. */
 function hasLighterRim(plane: Plane, { x, y, deviation }: Peak): boolean {
-  const radius = (deviation / bestDeviation) * 50;
-  const inside = samplePlane(plane, x, y);
-  let lighter = 0;
+  const scale = deviation / bestDeviation;
+  const level = 1.1 * samplePlane(plane, x, y);
+  let darker = 0;
   for (let ray = 0; ray < rayCount; ray += 4) {
-    const value = samplePlane(plane, x + radius * cosines[ray]!, y + radius * sines[ray]!);
-    if (value > inside * 1.1) lighter++;
+    const dx = scale * cosines[ray]!;
+    const dy = scale * sines[ray]!;
+    const near = samplePlane(plane, x + 46 * dx, y + 46 * dy);
+    const far = samplePlane(plane, x + 64 * dx, y + 64 * dy);
+    if (!(near > level || far > level)) darker++;
+    if (darker > 1) return false;
   }
-  return lighter >= 7;
+  return true;
 }
 
 interface Peak extends Point {
@@ -52,7 +56,7 @@ interface Peak extends Point {
   readonly answer: number;
 }
 
-/** Dark blobs: maxima of the difference of two blurs, strongest first. */
+/** Dark blobs in something lighter: maxima of the difference of two blurs, strongest first. */
 function findPeaks(plane: Plane): Peak[] {
   const peaks: Peak[] = [];
   let octave = plane;
@@ -62,7 +66,8 @@ function findPeaks(plane: Plane): Peak[] {
     octave = halve(octave);
     pixel *= 2;
   }
-  return peaks.sort((p, q) => q.answer - p.answer).slice(0, mostPeaks);
+  const rimmed = peaks.filter((peak) => hasLighterRim(plane, peak));
+  return rimmed.sort((p, q) => q.answer - p.answer).slice(0, mostPeaks);
 }
 
 function collectPeaks(
@@ -128,6 +133,11 @@ function isMaximum(answer: Float32Array, width: number, i: number, reach: number
     }
   }
   return true;
+}
+
+/** On a square that is already found, whose middle answers at several scales and whose corners do too. */
+function liesIn(peak: Peak, found: StationCandidate): boolean {
+  return Math.hypot(peak.x - found.x, peak.y - found.y) < 0.6 * squareSide * found.scale;
 }
 
 function areSame(a: StationCandidate, b: StationCandidate): boolean {

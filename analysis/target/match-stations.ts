@@ -25,7 +25,7 @@ const leastStations = 5;
 
 // With so many stations in their places the search ends: chance doesn't put eleven of thirteen there.
 const enoughStations = 11;
-const mostCandidates = 30;
+const mostCandidates = 40;
 
 /**
  * The ways to lay the target's stations on the candidates, best first. The pattern looks the same turned by 180°, so each stands for
