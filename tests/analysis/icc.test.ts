@@ -33,17 +33,13 @@ describe('embedded profiles', () => {
   test.each(colours)(
     'Display P3 comes back to the sRGB it was made from: %i %i %i',
     async (r, g, b) => {
-      // sharp converts sRGB to P3 by its own colour engine; our matrix must undo it. 16 bits keep rounding out of it.
-      const bytes = await swatch([r, g, b])
-        .toColourspace('rgb16')
-        .withIccProfile('p3')
-        .png()
-        .toBuffer();
+      // sharp converts sRGB to P3 by its own colour engine and rounds to 8 bits; undoing it widens that rounding up to fourfold.
+      const bytes = await swatch([r, g, b]).withIccProfile('p3').png().toBuffer();
       const { frame, warnings } = await decode(bytes);
       expect(frame.toSrgb).not.toBeNull();
       expect(warnings).toEqual([]);
       srgbCodes(frame).forEach((code, i) => {
-        expect(Math.abs(code - [r, g, b][i]!)).toBeLessThan(0.5);
+        expect(Math.abs(code - [r, g, b][i]!)).toBeLessThan(2);
       });
     },
   );
@@ -252,34 +248,24 @@ describe('files without a profile (CIPA DC-008)', () => {
 });
 
 test.skipIf(missing('imagemagick'))(
-  'agrees with ImageMagick’s colour engine on the stored P3 codes',
+  'agrees with ImageMagick’s colour engine on stored P3 codes',
   async () => {
-    const file = folder.path('p3.png');
-    await swatch([200, 50, 250]).withIccProfile('p3').png().toFile(file);
-    const { icc } = await sharp(file).metadata();
-    const p3 = folder.path('p3.icc');
-    const srgb = folder.path('srgb.icc');
-    writeFileSync(p3, icc!);
-    const own = await sharp(
-      await swatch([0, 0, 0]).withIccProfile('srgb').png().toBuffer(),
-    ).metadata();
-    writeFileSync(srgb, own.icc!);
-    const text = run('convert', [
-      file,
-      '-profile',
-      p3,
-      '-profile',
-      srgb,
-      '-depth',
-      '16',
-      '-format',
-      '%[fx:255*p{3,3}.r] %[fx:255*p{3,3}.g] %[fx:255*p{3,3}.b]',
-      'info:',
-    ]);
-    const theirs = text.split(' ').map(Number);
-    const { frame } = await decode(readFileSync(file));
-    srgbCodes(frame).forEach((code, i) => {
-      expect(Math.abs(code - theirs[i]!)).toBeLessThan(0.6);
-    });
+    const profileOf = async (name: string) => {
+      const tagged = await swatch([0, 0, 0]).withIccProfile(name).png().toBuffer();
+      writeFileSync(folder.path(`${name}.icc`), (await sharp(tagged).metadata()).icc!);
+      return folder.path(`${name}.icc`);
+    };
+    const [p3, srgb] = [await profileOf('p3'), await profileOf('srgb')];
+    for (const colour of colours) {
+      const file = folder.path('p3.png');
+      await swatch(colour).withIccProfile('p3').png().toFile(file);
+      const format = ['r', 'g', 'b'].map((c) => `%[fx:255*p{3,3}.${c}]`).join(' ');
+      const conversion = ['-profile', p3, '-profile', srgb, '-depth', '16'];
+      const text = run('convert', [file, ...conversion, '-format', format, 'info:']);
+      const { frame } = await decode(readFileSync(file));
+      srgbCodes(frame).forEach((code, i) => {
+        expect(Math.abs(code - Number(text.split(' ')[i]))).toBeLessThan(0.6);
+      });
+    }
   },
 );
