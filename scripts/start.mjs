@@ -1,4 +1,4 @@
-import { existsSync } from 'node:fs';
+import { existsSync, mkdirSync, readFileSync, writeFileSync } from 'node:fs';
 import { join, resolve } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { installDebian, installPackages } from './lib/install.mjs';
@@ -41,7 +41,23 @@ async function keep(what, start) {
   return service;
 }
 
+/** Two starts on one folder would fight for its database. */
+function claimFolder() {
+  mkdirSync(folder, { recursive: true });
+  const file = join(folder, 'start.pid');
+  const other = existsSync(file) ? readFileSync(file, 'utf8') : '';
+  const commandLine = `/proc/${other}/cmdline`;
+  const runs = other !== '' && existsSync(commandLine);
+  if (runs && readFileSync(commandLine, 'utf8').includes('start.mjs')) {
+    throw new Error(
+      `Mendlight runs already on ${folder}. End it first (Ctrl-C there, or: kill ${other}), or start with DATA=another-folder.`,
+    );
+  }
+  writeFileSync(file, String(process.pid));
+}
+
 async function main() {
+  claimFolder();
   await step('Packages from npm', () => installPackages(root));
   const { buildIfStale } = await import('./lib/built.mjs');
   const local = await import('./lib/local.mjs');
