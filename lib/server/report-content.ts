@@ -124,7 +124,7 @@ function measurementsOf({ samples }: ReportFacts): ReportMeasurement[] {
         zone,
         label: labelOf(sample),
         source: quantities.get(name)?.source ?? 'common practice',
-        text: withDoubt(mean, expanded, unit),
+        text: withDoubt(mean, expanded, unit, quantities.get(name)?.decimals),
         value: mean,
         expanded,
         unit,

@@ -22,9 +22,13 @@ export function withUnit(text: string, unit: string): string {
   return `${text}${word === '' || word === '°' ? '' : thin}${word}`;
 }
 
-/** "−0.68 ± 0.06 EV"; a count without doubt is just the number. */
-export function withDoubt(value: number, expanded: number, unit: string, most = 3): string {
-  if (expanded === 0) return withUnit(numberText(value, Number.isInteger(value) ? 0 : most), unit);
-  const decimals = decimalsOf(expanded, most);
-  return withUnit(`${numberText(value, decimals)} ± ${numberText(expanded, decimals)}`, unit);
+const mostPlaces = 4;
+
+/** "−0.68 ± 0.06 EV", to the doubt's first figure; a whole number without doubt is just that, another has `decimals`. */
+export function withDoubt(value: number, expanded: number, unit: string, decimals = 3): string {
+  if (expanded === 0) {
+    return withUnit(numberText(value, Number.isInteger(value) ? 0 : decimals), unit);
+  }
+  const places = decimalsOf(expanded, mostPlaces);
+  return withUnit(`${numberText(value, places)} ± ${numberText(expanded, places)}`, unit);
 }

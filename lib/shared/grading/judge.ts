@@ -38,7 +38,7 @@ function judgeMeasured(rule: MeasuredRule, evidence: Evidence, risk: number): Ju
   const combined = combineRepeats(repeats);
   const result: Uncertain = { ...combined, value: combined.mean };
   const moreShots = shotsToAsk(rule, result, repeats, risk);
-  const text = withDoubt(result.value, combined.expanded, unit);
+  const text = withDoubt(result.value, combined.expanded, unit, quantities.get(quantity)?.decimals);
   return {
     rule,
     result,

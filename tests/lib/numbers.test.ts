@@ -1,0 +1,26 @@
+import { expect, test } from 'vitest';
+import { decimalsOf, numberText, withDoubt, withUnit } from '@/lib/shared/numbers';
+
+const thin = '\u202f';
+
+// JCGM 100:2008, 7.2.6: the result is given to the place of its uncertainty's figures; one figure here.
+test.each([
+  [-0.6849, 0.0612, 'EV', `−0.68 ± 0.06${thin}EV`],
+  [58.31, 4.2, '%', `58 ± 4${thin}%`],
+  [1721.4, 31, 'LW/PH', `1721 ± 31${thin}LW/PH`],
+  [0.26543, 0.00312, 'cy/px', `0.265 ± 0.003${thin}cy/px`],
+  [1.2, 0.4, 'deg', '1.2 ± 0.4°'],
+  [3.14, 0.2, 'ΔE00', `3.1 ± 0.2${thin}ΔE`],
+  [2, 0, '1', '2'],
+  [0.1234, 0, '%', `0.123${thin}%`],
+  [0.2, 0.0000001, 'px', `0.2000 ± 0.0000${thin}px`],
+])('%d with doubt %d in %s reads %o', (value, expanded, unit, text) => {
+  expect(withDoubt(value, expanded, unit)).toBe(text);
+});
+
+test('a minus is a minus, and nothing is minus nought', () => {
+  expect(numberText(-1.5, 1)).toBe('−1.5');
+  expect(numberText(-0.001, 2)).toBe('0.00');
+  expect(withUnit('−3', 'deg')).toBe('−3°');
+  expect(decimalsOf(0.05, 3)).toBe(2);
+});
