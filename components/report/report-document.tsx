@@ -64,6 +64,7 @@ function linkedData(
   { unit, grade, headline, summary, publishedAt, shop }: ReportContent,
   url: string,
 ) {
+  // An escaped bracket can't end the script element, whatever a shop typed.
   return JSON.stringify({
     '@context': 'https://schema.org',
     '@type': 'Product',
@@ -79,5 +80,5 @@ function linkedData(
       datePublished: publishedAt,
       author: { '@type': 'Organization', name: shop.name },
     },
-  });
+  }).replaceAll('<', '\\u003c');
 }
