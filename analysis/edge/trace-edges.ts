@@ -71,15 +71,10 @@ const fewestPixels = 80;
  * length (with the bend that lens distortion gives it), and every pixel is projected along it into sub-pixel bins.
  * Profiles are kept in the picture's directions, rising: a falling edge is turned upside down, so that the two parallel edges of a
  * square see the same line-spread function.
- * @param chromaHalved  the file keeps colour at half the resolution: profiles then reach further, see chromatic/
+ * Where the file keeps colour at half the resolution the profiles reach further, see chromatic/.
  */
-export function traceEdges(
-  frame: Frame,
-  registration: Registration,
-  tables: LightTables,
-  chromaHalved: boolean,
-): Traces {
-  const least = chromaHalved ? chromaReach : 0;
+export function traceEdges(frame: Frame, registration: Registration, tables: LightTables): Traces {
+  const least = frame.chromaHalved ? chromaReach : 0;
   const samples = createSamples();
   const edges: EdgeTrace[] = [];
   const refused: { station: string; edge: Edge; reason: 'clipped' | 'faint' | 'small' }[] = [];

@@ -33,6 +33,11 @@ export interface EdgeSharpness {
 
 /** Relative standard uncertainty that averaging over pixels doesn't lessen: linearisation, edge straightness, JPEG. Found on rendered scenes. */
 const systematic = 0.004;
+/** The same for the response at high frequencies, where a JPEG rounds much of the little there is to nothing: relative for mtf10, % for nyquist. */
+const highFrequency = {
+  plain: { mtf10: 0.012, nyquist: 0.6 },
+  compressed: { mtf10: 0.03, nyquist: 1.6 },
+};
 const curvePoints = 33;
 
 /**
@@ -55,7 +60,7 @@ export function measureSharpness(
     const found: EdgeSharpness[] = [];
     for (const edge of ['vertical', 'horizontal'] as const) {
       const own = traces.edges.filter((e) => e.station === id && e.edge === edge);
-      const read = readDirection(own, edge);
+      const read = readDirection(own, edge, frame.blockStep !== undefined);
       if (read === null) continue;
       if (typeof read === 'string') {
         warnings.push(unreadable(id, edge, read));
@@ -87,6 +92,7 @@ type Unreadable = 'phase' | 'noise';
 function readDirection(
   edges: readonly EdgeTrace[],
   edge: Edge,
+  compressed: boolean,
 ): { fit: ProfileFit; sharpness: EdgeSharpness } | Unreadable | null {
   if (edges.length === 0) return null;
   if (widestGap(edges) > mostGap) return 'phase';
@@ -98,7 +104,7 @@ function readDirection(
   if (!fit) return 'noise';
   const mtf50 = crossing(fit, 0.5);
   if (!mtf50 || mtf50.uncertainty > mostDoubt * mtf50.value) return 'noise';
-  return { fit, sharpness: sharpnessOf(fit, edge, mtf50) };
+  return { fit, sharpness: sharpnessOf(fit, edge, mtf50, compressed) };
 }
 
 /** Doubt above which a sharpness is not worth showing. Our choice. */
@@ -121,13 +127,19 @@ function widestGap(edges: readonly EdgeTrace[]): number {
   return distances.length < 4 ? 1 : widest - 1 / binsPerPixel;
 }
 
-function sharpnessOf(fit: ProfileFit, edge: Edge, mtf50: Estimate): EdgeSharpness {
+function sharpnessOf(
+  fit: ProfileFit,
+  edge: Edge,
+  mtf50: Estimate,
+  compressed: boolean,
+): EdgeSharpness {
+  const doubt = compressed ? highFrequency.compressed : highFrequency.plain;
   const mtf10 = crossing(fit, 0.1);
   return {
     edge,
     mtf50: widened(mtf50, systematic * mtf50.value),
-    mtf10: mtf10 && widened(mtf10, 0.02 * mtf10.value),
-    nyquist: widened(responsePercent(fit, 0.5), 1),
+    mtf10: mtf10 && widened(mtf10, doubt.mtf10 * mtf10.value),
+    nyquist: widened(responsePercent(fit, 0.5), doubt.nyquist),
     rise: widened(riseDistance(fit), 2 * systematic * riseDistance(fit).value),
     overshoot: widened(overshootPercent(fit), 0.2),
   };

@@ -21,11 +21,11 @@ export function studentT(p: number, nu: number): number {
   return (low + high) / 2;
 }
 
-/** Distribution function of Student's t, P(T ≤ t); `nu` as above. */
+/** P(T ≤ t) for a Student t variable; `nu` may be Infinity. */
 export function studentCdf(t: number, nu: number): number {
   if (nu > 1e7) return normalCdf(t);
-  const half = withinT(Math.abs(t), nu) / 2;
-  return t < 0 ? 0.5 - half : 0.5 + half;
+  const within = withinT(Math.abs(t), nu);
+  return t > 0 ? 0.5 + within / 2 : 0.5 - within / 2;
 }
 
 /** P(|T| ≤ t). */

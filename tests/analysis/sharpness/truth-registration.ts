@@ -82,11 +82,14 @@ export function frameOf(width: number, height: number, data: Uint8Array | Uint16
 
 /** Decodes an 8-bit file without turning to analysis/decode.ts, which is not what these tests are about. */
 export async function decodeFrame(bytes: Buffer): Promise<Frame> {
+  const { chromaSubsampling, format } = await sharp(bytes).metadata();
   const { data, info } = await sharp(bytes)
     .removeAlpha()
     .raw()
     .toBuffer({ resolveWithObject: true });
-  return frameOf(info.width, info.height, new Uint8Array(data));
+  const frame = frameOf(info.width, info.height, new Uint8Array(data));
+  const chromaHalved = chromaSubsampling?.startsWith('4:2') ?? false;
+  return format === 'jpeg' ? { ...frame, chromaHalved, blockStep: { luma: 1, chroma: 1 } } : frame;
 }
 
 /** Inverse of the renderer's tone curve as a tone response: code 0…1 → scene light, exact below the shoulder. */
