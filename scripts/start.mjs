@@ -111,7 +111,7 @@ async function openDemoShop(environment, { people, password }) {
     await step('People of the demo shop', async () => {
       const seeding = await startSeeding(root, folder, environment);
       running.push(seeding);
-      seeding.child.once('exit', (code) => {
+      seeding.ended.then((code) => {
         if (ending) return;
         running.splice(running.indexOf(seeding), 1);
         console.log(

@@ -129,11 +129,10 @@ export async function startSeeding(root, folder, environment) {
     },
   );
   closeSync(log);
-  await new Promise((resolve) => {
-    child.once('message', resolve);
-    child.once('exit', resolve);
-  });
-  return { child, stop: () => stop(child) };
+  const ended = new Promise((resolve) => child.once('exit', resolve));
+  const opened = new Promise((resolve) => child.once('message', resolve));
+  await Promise.race([opened, ended]);
+  return { child, ended, stop: () => stop(child) };
 }
 
 /** The environment of everything that runs the product here. */
