@@ -149,7 +149,7 @@ function measureSquare(plane: Plane, start: Point, startScale: number): StationC
   let centre = start;
   let scale = startScale;
   let outline: Outline | null = null;
-  for (let pass = 0; pass < 3; pass++) {
+  for (let pass = 0; pass < 2; pass++) {
     outline = traceOutline(plane, centre, scale);
     if (!outline) return null;
     const { area, x, y } = centroidOf(outline.radii);
@@ -170,7 +170,7 @@ interface Outline {
 
 function traceOutline(plane: Plane, centre: Point, scale: number): Outline | null {
   const inside = samplePlane(plane, centre.x, centre.y);
-  const step = Math.max(0.5, 3 * scale);
+  const step = Math.max(0.75, 4 * scale);
   const samples = Math.ceil((padRadius * scale) / step) + 1;
   const values = new Float32Array(rayCount * samples);
   const tops = new Float64Array(rayCount);

@@ -197,8 +197,9 @@ function rootMeanSquare(values: readonly number[]): number {
 }
 
 function notFound(candidateCount: number, pose: Pose | null): MeasurementError {
-  let seen = `${candidateCount} of its thirteen squares were seen`;
+  let seen = `${candidateCount} marks like its squares were seen, but not in their pattern`;
   if (candidateCount === 0) seen = 'none of its thirteen squares was seen';
+  if (candidateCount === 1) seen = 'only one mark like its thirteen squares was seen';
   if (pose) seen = 'squares were seen in its pattern, but not the discs between them';
   return new MeasurementError(
     'target-not-found',
