@@ -9,7 +9,9 @@ export async function analyseBytes(
 ): Promise<Analysis> {
   const start = performance.now();
   const decoded = await decode(bytes);
-  return analyseDecoded(decoded, performance.now() - start, options);
+  const milliseconds = performance.now() - start;
+  options.onStage?.('decode', milliseconds);
+  return analyseDecoded(decoded, milliseconds, options);
 }
 
 /** The same for a file that is decoded already, for callers that need its pixels as well. */

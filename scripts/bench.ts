@@ -48,49 +48,63 @@ async function picture({ name, plan }: Case): Promise<{ path: string; bytes: Uin
   return { path, bytes };
 }
 
-async function time(work: () => Promise<unknown>): Promise<number> {
-  const start = performance.now();
-  await work();
-  return performance.now() - start;
+interface Cost {
+  /** Milliseconds that passed, and that processors were at work for this process: the latter a busy machine hardly changes. */
+  wall: number;
+  work: number;
 }
 
-function median(values: number[]): number {
-  return [...values].sort((a, b) => a - b)[values.length >> 1]!;
+function clock(): () => Cost {
+  const start = performance.now();
+  const before = process.cpuUsage();
+  return () => {
+    const { user, system } = process.cpuUsage(before);
+    return { wall: performance.now() - start, work: (user + system) / 1000 };
+  };
+}
+
+async function time(work: () => Promise<unknown>): Promise<Cost> {
+  const stop = clock();
+  await work();
+  return stop();
+}
+
+function median(costs: Cost[]): Cost {
+  const middle = (values: number[]) => values.sort((a, b) => a - b)[values.length >> 1]!;
+  return { wall: middle(costs.map((c) => c.wall)), work: middle(costs.map((c) => c.work)) };
 }
 
 async function benchSpeed(one: Case): Promise<void> {
   const { bytes } = await picture(one);
   const decode = () => sharp(bytes).raw().toBuffer();
-  const stages = new Map<string, number[]>();
-  const onStage = (name: string, milliseconds: number) => {
-    stages.set(name, [...(stages.get(name) ?? []), milliseconds]);
-  };
+  const stages = new Map<string, Cost[]>();
   const cold = await time(() => analyseBytes(bytes));
-  const decodes: number[] = [];
-  const analyses: number[] = [];
-  const shares: number[] = [];
+  const decodes: Cost[] = [];
+  const analyses: Cost[] = [];
   // In turns, so that a busy moment of the machine falls on both.
   for (let run = 0; run < runs; run++) {
     decodes.push(await time(decode));
-    analyses.push(
-      await time(async () => {
-        const { milliseconds } = await analyseBytes(bytes, { onStage });
-        shares.push(milliseconds.decode);
-      }),
-    );
+    let stop = clock();
+    const onStage = (name: string, milliseconds: number) => {
+      stages.set(name, [...(stages.get(name) ?? []), { wall: milliseconds, work: stop().work }]);
+      stop = clock();
+    };
+    analyses.push(await time(() => analyseBytes(bytes, { onStage })));
   }
   const reference = median(decodes);
   const whole = median(analyses);
   console.log(`\n${one.name}, JPEG of ${(bytes.length / 1e6).toFixed(1)} MB, median of ${runs}`);
-  const line = (name: string, milliseconds: number) =>
+  const column = (value: number, of: number) =>
+    `${value.toFixed(0).padStart(7)} ms ${(value / of).toFixed(2).padStart(5)} ×`;
+  const line = (name: string, { wall, work }: Cost) =>
     console.log(
-      `  ${name.padEnd(28)} ${milliseconds.toFixed(0).padStart(6)} ms  ${(milliseconds / reference).toFixed(2).padStart(5)} ×`,
+      `  ${name.padEnd(28)}${column(wall, reference.wall)}${column(work, reference.work)}`,
     );
+  console.log(`  ${''.padEnd(28)}${'passed'.padStart(10)}${'processor'.padStart(18)}`);
   line('sharp to raw pixels', reference);
   line('analysis, decode included', whole);
   line('analysis, first in process', cold);
-  line('  decode', median(shares));
-  for (const [name, values] of stages) line(`  ${name}`, median(values));
+  for (const [name, costs] of stages) line(`  ${name}`, median(costs));
 }
 
 /** In a process of its own, so that nothing else counts. */

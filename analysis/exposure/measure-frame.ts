@@ -23,7 +23,7 @@ const enoughPixels = 1e6;
 
 /**
  * One look over the whole frame: clipping on every pixel, median and histograms on an even sample of a million or more.
- * Clipping: common practice, no source (levels as in ../README's quantities).
+ * Clipping: common practice, no source; 254 counts because JPEG's ringing makes 255 alone an underestimate.
  */
 export function measureFrame(frame: Frame): FrameLight {
   const pixels = frame.width * frame.height;
@@ -53,7 +53,9 @@ interface Clipped {
 function countClipped(frame: Frame): Clipped {
   const { data } = frame;
   if (data instanceof Uint8Array && data.byteOffset % 4 === 0) return countClippedBytes(data);
-  return countClippedPixels(data, 0, data.length, frame.maxCode);
+  const total: Clipped = { highlights: 0, shadows: 0 };
+  addClipped(total, data, 0, data.length, frame.maxCode);
+  return total;
 }
 
 /**
@@ -97,17 +99,6 @@ function addClipped(
     if (r >= high || g >= high || b >= high) total.highlights++;
     else if (r <= low && g <= low && b <= low) total.shadows++;
   }
-}
-
-function countClippedPixels(
-  data: Frame['data'],
-  from: number,
-  to: number,
-  maxCode: number,
-): Clipped {
-  const total: Clipped = { highlights: 0, shadows: 0 };
-  addClipped(total, data, from, to, maxCode);
-  return total;
 }
 
 interface Histograms {

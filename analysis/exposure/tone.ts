@@ -36,6 +36,8 @@ const fewestGreys = 4;
 const farthestBeyond = 1;
 /** Uncertainty that stays however many pixels: the greys' own shading, stops. Found by rendering. */
 const floorStops = 0.001;
+/** Part of a JPEG's rounding in red and blue that neighbouring greys share. Found by rendering. */
+const sharedRounding = 0.4;
 
 /**
  * @param samples all discs; the greys among them that are unclipped are used
@@ -158,7 +160,10 @@ function midGreyOf(frame: Frame, greys: readonly DiscSample[], channel: number):
   if (points.some((p) => !Number.isFinite(p.y))) return null;
   const at = Math.log2(midGrey);
   const inReach = points.some((p) => p.x <= at + 0.5) && points.some((p) => p.x >= at - 0.5);
-  return inReach ? localFit(points, at, reach) : null;
+  const fit = inReach ? localFit(points, at, reach) : null;
+  if (!fit || !frame.blockStep) return fit;
+  const mean = points.reduce((sum, p) => sum + p.sigma, 0) / points.length;
+  return { ...fit, uncertainty: Math.hypot(fit.uncertainty, sharedRounding * mean) };
 }
 
 /** Regression over ±1.5 stops; each grey stands for the stretch of the scale that lies nearest to it. */

@@ -13,8 +13,8 @@ let analysis: Analysis;
 
 beforeAll(async () => {
   const rendered = await renderScene({
-    width: 1600,
-    height: 1200,
+    width: 1200,
+    height: 900,
     fill: 0.9,
     rotationDegrees: 2,
     exposureEv: -0.6,
@@ -34,7 +34,7 @@ beforeAll(async () => {
   bytes = rendered.bytes;
   truth = rendered.truth;
   analysis = await analyseBytes(bytes);
-});
+}, 120_000);
 
 const value = (name: string) =>
   analysis.metrics.find((m) => m.name === name && !m.zone)?.value ?? Number.NaN;

@@ -26,7 +26,7 @@ beforeAll(async () => {
   await sharp({ create: { width: 320, height: 240, channels: 3, background: '#708090' } }).toFile(
     files.scene,
   );
-});
+}, 120_000);
 
 function analyse(...args: string[]) {
   const { status, stdout, stderr } = spawnSync(

@@ -13,11 +13,8 @@ describe('monotone curve (Fritsch & Carlson 1980)', () => {
     });
   });
   test('never falls, however uneven the points', () => {
-    let before = Number.NEGATIVE_INFINITY;
-    for (let at = -1; at <= 5; at += 0.001) {
-      expect(curve(at)).toBeGreaterThanOrEqual(before);
-      before = curve(at);
-    }
+    const values = Array.from({ length: 6001 }, (_, i) => curve(i / 1000 - 1));
+    expect(values.every((value, i) => i === 0 || value >= values[i - 1]!)).toBe(true);
   });
   test('keeps a straight line straight, beyond both ends too', () => {
     const line = monotoneCurve([0, 1, 4], [1, 3, 9], 2, 2);

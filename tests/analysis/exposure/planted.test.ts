@@ -11,7 +11,7 @@ import { plantedRegistration } from '../planted-registration';
 
 /** Exposure, tone and colour of a rendered scene, the geometry known, so that nothing else can be at fault. */
 async function measure(plan: ScenePlan) {
-  const { bytes, truth } = await renderScene({ width: 1200, height: 900, ...plan });
+  const { bytes, truth } = await renderScene({ width: 960, height: 720, ...plan });
   const { frame, capture } = await decode(bytes);
   const registration = plantedRegistration(truth, plan.target);
   const samples = sampleDiscs(frame, registration);
