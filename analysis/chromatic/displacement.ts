@@ -53,7 +53,9 @@ function fromBlurredChroma(green: ChannelTrace, other: ChannelTrace): EdgeDispla
   for (let pass = 0; pass < 4; pass++) {
     found = solveShift(pairs, green, shift);
     if (!found) return null;
-    shift = Math.abs(found.value) < 0.05 ? 0.05 : Math.max(-6, Math.min(6, found.value));
+    const next = Math.abs(found.value) < 0.05 ? 0.05 : Math.max(-6, Math.min(6, found.value));
+    if (Math.abs(next - shift) < 0.02) break;
+    shift = next;
   }
   return found;
 }

@@ -13,8 +13,8 @@ export interface Spot {
 const weights = [0.2126, 0.7152, 0.0722] as const;
 const unknowns = 6;
 const fewestPixels = 60;
-/** Pixels a spot is thinned to: more make the figure no better than its own systematic part. */
-const enough = 70;
+/** Largest radius that is read, px: more pixels make the figure no better than its own systematic part. */
+const enough = 32;
 
 /** @returns null when the spot leaves the frame, is clipped, or has fewer than 60 pixels */
 export function measureSpot(frame: Frame, at: Point, radius: number): Spot | null {

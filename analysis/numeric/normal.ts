@@ -52,6 +52,19 @@ const table = Float64Array.from({ length: 2 * reach * perUnit + 2 }, (_, i) =>
   normalCdf(i / perUnit - reach),
 );
 
+const densityTable = Float64Array.from({ length: 2 * reach * perUnit + 2 }, (_, i) =>
+  normalDensity(i / perUnit - reach),
+);
+
+/** The standard normal density from a table, for inner loops; absolute error below 2e-7. */
+export function fastNormalDensity(z: number): number {
+  if (z <= -reach || z >= reach) return 0;
+  const at = (z + reach) * perUnit;
+  const cell = at | 0;
+  const low = densityTable[cell]!;
+  return low + (densityTable[cell + 1]! - low) * (at - cell);
+}
+
 /** Φ from a table, for inner loops; absolute error below 2e-7. */
 export function fastNormalCdf(z: number): number {
   if (z <= -reach) return 0;
