@@ -43,7 +43,7 @@ function QueueRow({ row, now }: { row: GradingRow; now: number }) {
       data-row
       className="-mx-2 grid grid-cols-[64px_minmax(0,1fr)_auto] items-center gap-x-4 rounded-well px-2 py-3 no-underline hover:bg-sheet md:grid-cols-[80px_minmax(0,1fr)_minmax(0,1.2fr)_110px_56px]"
     >
-      <Thumb src={row.picture} />
+      <Thumb src={row.picture} modelClass={row.modelClass} />
       <span className="min-w-0">
         <span className="block font-semibold">
           {row.maker} {row.model}

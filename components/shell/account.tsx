@@ -24,13 +24,18 @@ export function Account({
     <div className="flex items-center gap-1 md:flex-col md:items-stretch">
       <div className="label min-w-0 px-3 pb-1 max-md:hidden">
         <div className="truncate text-ink">{actor.name}</div>
-        <div className="truncate">
-          {actor.role}, {actor.shopName}
-        </div>
+        <div>{actor.role}</div>
+        <div>{actor.shopName}</div>
       </div>
       <ThemeSwitch keep={keepTheme} />
       <KeyHelp />
-      <Button variant="bare" size="small" busy={leaving} onClick={leave}>
+      <Button
+        variant="bare"
+        size="small"
+        className="md:justify-start"
+        busy={leaving}
+        onClick={leave}
+      >
         Sign out
       </Button>
     </div>

@@ -23,7 +23,7 @@ export function KeyHelp() {
   useShortcuts([{ key: '?', label: 'Show these keys', run: show }]);
   return (
     <>
-      <Button variant="bare" size="small" hint="?" onClick={show}>
+      <Button variant="bare" size="small" className="md:justify-between" hint="?" onClick={show}>
         Keys
       </Button>
       <Dialog

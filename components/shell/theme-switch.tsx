@@ -20,7 +20,7 @@ export function ThemeSwitch({ keep }: { keep: (theme: Theme) => Promise<void> })
   };
   useShortcuts([{ key: 't', label: 'Switch between daylight and safelight', run: turn }]);
   return (
-    <Button variant="bare" size="small" hint="T" onClick={turn}>
+    <Button variant="bare" size="small" className="md:justify-between" hint="T" onClick={turn}>
       {other === 'safelight' ? 'Safelight' : 'Daylight'}
     </Button>
   );

@@ -1,13 +1,17 @@
 import Image from 'next/image';
+import { UnitGlyph } from '@/components/pictures/unit-glyph';
 import { cn } from '@/components/ui/cn';
+import type { ModelClass } from '@/lib/shared/words';
 
-/** A photograph on the 18 % well, or the empty well where there is none yet. */
+/** A photograph on the 18 % well, or a drawing of such a camera where there is none yet. */
 export function Thumb({
   src,
+  modelClass,
   alt = '',
   className,
 }: {
   src: string | null;
+  modelClass: ModelClass;
   alt?: string;
   className?: string;
 }) {
@@ -23,8 +27,8 @@ export function Thumb({
           className="size-full object-cover"
         />
       ) : (
-        <span className="grid size-full place-items-center">
-          <span className="size-1/3 max-w-5 rounded-full border-2 border-[#a8a8a8] border-dotted [aspect-ratio:1]" />
+        <span className="grid size-full place-items-center text-[#d2d2d2]">
+          <UnitGlyph modelClass={modelClass} size={30} />
         </span>
       )}
     </span>

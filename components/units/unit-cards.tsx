@@ -17,7 +17,7 @@ export function UnitCards({ rows, stale = false }: { rows: UnitRow[]; stale?: bo
             data-row
             className="grid grid-cols-[72px_minmax(0,1fr)_auto] items-start gap-3 py-2.5 no-underline"
           >
-            <Thumb src={unit.picture} />
+            <Thumb src={unit.picture} modelClass={unit.modelClass} />
             <span className="min-w-0">
               <span className="block font-semibold leading-tight">
                 {unit.maker} {unit.model}

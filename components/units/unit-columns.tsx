@@ -14,7 +14,9 @@ export const unitColumns = helper.columns([
   helper.display({
     id: 'picture',
     header: () => <span className="sr-only">Picture</span>,
-    cell: ({ row }) => <Thumb src={row.original.picture} className="w-16" />,
+    cell: ({ row }) => (
+      <Thumb src={row.original.picture} modelClass={row.original.modelClass} className="w-16" />
+    ),
     enableSorting: false,
   }),
   helper.accessor('tag', {

@@ -2,6 +2,7 @@
 
 import { type SortingState, useTable } from '@tanstack/react-table';
 import { useRouter } from 'next/navigation';
+import { useMemo } from 'react';
 import { cn } from '@/components/ui/cn';
 import { Table, Td, Th } from '@/components/ui/table';
 import type { UnitRow } from '@/lib/shared/api';
@@ -21,7 +22,11 @@ export function UnitTable({
   stale: boolean;
 }) {
   const router = useRouter();
-  const sorting: SortingState = [{ id: query.sort, desc: query.order === 'desc' }];
+  // The table compares its state by identity: a new array on every render would set it off again without end.
+  const sorting = useMemo<SortingState>(
+    () => [{ id: query.sort, desc: query.order === 'desc' }],
+    [query.sort, query.order],
+  );
   const table = useTable({
     features: unitFeatures,
     columns: unitColumns,
@@ -58,7 +63,9 @@ export function UnitTable({
                       <SortMark sorted={sorted} />
                     </button>
                   ) : (
-                    <table.FlexRender header={header} />
+                    <span className="inline-flex min-h-6 items-center">
+                      <table.FlexRender header={header} />
+                    </span>
                   )}
                 </Th>
               );
