@@ -48,12 +48,22 @@ export async function analysisIds(actor: Actor, runIds: readonly string[]): Prom
   return shots.flatMap((shot) => shot.latestAnalysisId ?? []);
 }
 
-async function measurementsOf(actor: Actor, ids: string[]): Promise<Measurement[]> {
+type Row = Pick<
+  Measurement,
+  'unitId' | 'name' | 'zone' | 'edge' | 'unit' | 'value' | 'uncertainty'
+>;
+
+/** Plain rows: a run and its peers have thousands. */
+async function measurementsOf(actor: Actor, ids: string[]): Promise<Row[]> {
   if (ids.length === 0) return [];
-  return db().Measurement.findAll({ where: inShop(actor, { analysisId: { [Op.in]: ids } }) });
+  return db().Measurement.findAll({
+    attributes: ['unitId', 'name', 'zone', 'edge', 'unit', 'value', 'uncertainty'],
+    where: inShop(actor, { analysisId: { [Op.in]: ids } }),
+    raw: true,
+  });
 }
 
-function samplesOf(rows: readonly Measurement[]): Samples {
+function samplesOf(rows: readonly Row[]): Samples {
   const samples = new Map<string, Sample & { repeats: Repeat[] }>();
   for (const { name, zone, edge, unit, value, uncertainty } of rows) {
     const key = sampleKey(name, zone, edge);

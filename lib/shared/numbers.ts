@@ -24,9 +24,9 @@ export function withUnit(text: string, unit: string): string {
 
 const mostPlaces = 4;
 
-/** "−0.68 ± 0.06 EV", to the doubt's first figure; a whole number without doubt is just that, another has `decimals`. */
+/** "−0.68 ± 0.06 EV", to the doubt's first figure. Without a doubt worth four places, a whole number is just that, another has `decimals`. */
 export function withDoubt(value: number, expanded: number, unit: string, decimals = 3): string {
-  if (expanded === 0) {
+  if (Number(expanded.toFixed(mostPlaces)) === 0) {
     return withUnit(numberText(value, Number.isInteger(value) ? 0 : decimals), unit);
   }
   const places = decimalsOf(expanded, mostPlaces);

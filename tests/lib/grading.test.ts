@@ -271,7 +271,8 @@ function allowedBy(rule: Rule & MeasuredRule, value: number): string {
 test('limits and margins read plainly', () => {
   expect(range([null, 5], 'ΔE00')).toBe('at most 5\u202fΔE');
   expect(range([65, null], '%')).toBe('at least 65\u202f%');
-  expect(range([-0.4, 0.4], 'EV')).toBe('−0.40 to 0.40\u202fEV');
+  expect(range([-1, 0.4], 'EV')).toBe('−1.0 to 0.4\u202fEV');
+  expect(range([null, 0.33], 'px')).toBe('at most 0.33\u202fpx');
   expect(marginOf(-0.3, [-0.4, 0.4])).toBeCloseTo(0.1, 12);
   expect(marginOf(60, [65, null])).toBe(-5);
 });

@@ -13,7 +13,7 @@ test.each([
   [3.14, 0.2, 'ΔE00', `3.1 ± 0.2${thin}ΔE`],
   [2, 0, '1', '2'],
   [0.1234, 0, '%', `0.123${thin}%`],
-  [0.2, 0.0000001, 'px', `0.2000 ± 0.0000${thin}px`],
+  [0.2, 0.0000001, 'px', `0.200${thin}px`],
 ])('%d with doubt %d in %s reads %o', (value, expanded, unit, text) => {
   expect(withDoubt(value, expanded, unit)).toBe(text);
 });

@@ -195,12 +195,14 @@ export function marginOf(value: number, [low, high]: Limits): number {
   );
 }
 
-/** Limits in words: "at most 5 ΔE", "at least 65 %", "−0.40 to 0.40 EV". */
+/** Limits in words, with as many decimals as they need: "at most 5 ΔE", "at least 65 %", "−1.0 to 0.4 EV". */
 export function range([low, high]: Limits, unit: string): string {
-  const text = (value: number) => numberText(value, Number.isInteger(value) ? 0 : 2);
-  if (low === null) return withUnit(`at most ${text(high ?? 0)}`, unit);
-  if (high === null) return withUnit(`at least ${text(low)}`, unit);
-  return withUnit(`${text(low)} to ${text(high)}`, unit);
+  const decimals = Math.max(decimalsIn(low), decimalsIn(high));
+  if (low === null) return withUnit(`at most ${numberText(high ?? 0, decimals)}`, unit);
+  if (high === null) return withUnit(`at least ${numberText(low, decimals)}`, unit);
+  return withUnit(`${numberText(low, decimals)} to ${numberText(high, decimals)}`, unit);
 }
+
+const decimalsIn = (limit: number | null) => String(limit ?? 0).split('.')[1]?.length ?? 0;
 
 const labelOf = (id: string) => functionCheckItems.find((item) => item.id === id)?.label ?? id;
