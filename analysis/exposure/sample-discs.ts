@@ -239,12 +239,12 @@ function slopeAt(toLinear: Float32Array, code: number): number {
 }
 
 /**
- * More than one pixel in a hundred at an end (254 and over, 1 and under of 255). Noise figures need a mean three deviations from
- * the end; a mean doesn't: at one in a hundred it is off by a three-hundredth of the noise.
+ * More than one pixel in twenty at an end (254 and over, 1 and under of 255). Noise figures need a mean three deviations from
+ * the end; a mean doesn't: at one in twenty it is off by a fiftieth of the noise.
  */
 function isClipped(histogram: Uint32Array, pixels: number, maxCode: number): boolean {
   const low = Math.round(maxCode / 255);
   let atEnds = 0;
   for (let code = 0; code <= low; code++) atEnds += histogram[code]! + histogram[maxCode - code]!;
-  return atEnds > pixels / 100;
+  return atEnds > pixels / 20;
 }
