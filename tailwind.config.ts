@@ -22,8 +22,8 @@ export default {
       channel: { red: 'var(--red)', green: 'var(--green)', blue: 'var(--blue)' },
     },
     fontFamily: {
-      sans: ['Archivo', '"Archivo stand-in"', 'sans-serif'],
-      mono: ['"Spline Sans Mono"', 'ui-monospace', 'monospace'],
+      sans: ['var(--sans)'],
+      mono: ['var(--mono)'],
     },
     extend: {
       borderRadius: { panel: '14px', well: '10px' },

@@ -54,7 +54,7 @@ export default async function LandingPage() {
           </div>
           <figure className="justify-self-center max-sm:order-first">
             <GradeDial letter="B" rules={exampleRules} size={236} />
-            <figcaption className="label text-center">
+            <figcaption className="label text-balance text-center">
               Example: one disc a rule, one in doubt, one not met
             </figcaption>
           </figure>

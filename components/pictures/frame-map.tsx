@@ -154,7 +154,7 @@ function Shares({
   return (
     <g fill="#ffffff" stroke="var(--well)" strokeWidth={6} paintOrder="stroke">
       {stations.map(({ id, x, y, share, weak }) => {
-        const above = y > height * 0.7;
+        const above = y > height * 0.8;
         return (
           <text
             key={id}

@@ -41,7 +41,7 @@ export function SignInForm({ next }: { next: string }) {
         type="password"
         autoComplete="current-password"
         note={
-          <Link href="/forgotten" className="inline-block min-h-6 underline underline-offset-2">
+          <Link href="/forgotten" className="-my-1 inline-block py-1 underline underline-offset-2">
             Forgotten?
           </Link>
         }

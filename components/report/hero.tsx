@@ -26,7 +26,7 @@ export function Hero({ content }: { content: ReportContent }) {
         </div>
         <figure className="justify-self-center text-center max-sm:order-first">
           <GradeDial letter={grade.letter} rules={content.rules} size={224} />
-          <figcaption className="label">
+          <figcaption className="label text-balance">
             Grade {grade.letter === 'Parts' ? 'Parts only' : grade.letter}:{' '}
             {letterMeans[grade.letter]}
           </figcaption>

@@ -149,7 +149,7 @@ export function Choice({
 /** The form's own refusal, above its button; announced when it appears. */
 export function FormError({ children }: { children?: ReactNode }) {
   return (
-    <div role="alert">
+    <div role="alert" className="empty:absolute">
       {children ? (
         <p className="rounded-well bg-light-soft px-3.5 py-2.5 text-[14px] font-medium text-ink">
           {children}
