@@ -32,7 +32,7 @@ export function Account({
       <Button
         variant="bare"
         size="small"
-        className="md:justify-start"
+        className="whitespace-nowrap md:justify-start"
         busy={leaving}
         onClick={leave}
       >

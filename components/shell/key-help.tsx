@@ -23,7 +23,13 @@ export function KeyHelp() {
   useShortcuts([{ key: '?', label: 'Show these keys', run: show }]);
   return (
     <>
-      <Button variant="bare" size="small" className="md:justify-between" hint="?" onClick={show}>
+      <Button
+        variant="bare"
+        size="small"
+        className="max-md:hidden md:justify-between"
+        hint="?"
+        onClick={show}
+      >
         Keys
       </Button>
       <Dialog

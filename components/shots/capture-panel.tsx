@@ -2,7 +2,7 @@ import type { Capture } from '@/analysis/image';
 import { signedText } from '@/components/pictures/draw';
 import { Panel, PanelHead } from '@/components/ui/panel';
 import { exposureTime } from '@/lib/client/format';
-import { thin } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/findings';
 
 const programWords: Record<string, string> = {
   manual: 'manual exposure',
@@ -52,8 +52,8 @@ export function settingsOf(capture: Capture): string {
   return [
     light,
     iso ? `ISO ${iso}` : null,
-    focalLength ? `${Number(focalLength.toFixed(1))}${thin}mm` : null,
-    exposureBias ? `${signedText(exposureBias, 1)}${thin}EV` : null,
+    focalLength ? `${Number(focalLength.toFixed(1))}${gap}mm` : null,
+    exposureBias ? `${signedText(exposureBias, 1)}${gap}EV` : null,
   ]
     .filter(Boolean)
     .join(', ');

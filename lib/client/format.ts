@@ -1,4 +1,4 @@
-import { thin } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/findings';
 
 const days = new Intl.DateTimeFormat('en-GB', { dateStyle: 'medium', timeZone: 'UTC' });
 
@@ -42,24 +42,24 @@ export function parseMoney(typed: string, currency: string): number | undefined 
 }
 
 export function bytes(count: number): string {
-  if (count < 1e6) return `${Math.max(1, Math.round(count / 1e3))}${thin}kB`;
-  return `${(count / 1e6).toFixed(1)}${thin}MB`;
+  if (count < 1e6) return `${Math.max(1, Math.round(count / 1e3))}${gap}kB`;
+  return `${(count / 1e6).toFixed(1)}${gap}MB`;
 }
 
 /** "about 9 s", "about 2 min". */
 export function about(seconds: number): string {
-  return seconds < 90 ? `about ${seconds}${thin}s` : `about ${Math.round(seconds / 60)}${thin}min`;
+  return seconds < 90 ? `about ${seconds}${gap}s` : `about ${Math.round(seconds / 60)}${gap}min`;
 }
 
 export function bookedTime(minutes: number): string {
   const hours = Math.floor(minutes / 60);
   const rest = minutes % 60;
-  if (hours === 0) return `${rest}${thin}min`;
-  return rest === 0 ? `${hours}${thin}h` : `${hours}${thin}h ${rest}${thin}min`;
+  if (hours === 0) return `${rest}${gap}min`;
+  return rest === 0 ? `${hours}${gap}h` : `${hours}${gap}h ${rest}${gap}min`;
 }
 
 /** A shutter time as cameras write it: 1/125 s, 2 s. */
 export function exposureTime(seconds: number): string {
-  if (seconds >= 0.35) return `${Number(seconds.toFixed(1))}${thin}s`;
-  return `1/${Math.round(1 / seconds)}${thin}s`;
+  if (seconds >= 0.35) return `${Number(seconds.toFixed(1))}${gap}s`;
+  return `1/${Math.round(1 / seconds)}${gap}s`;
 }

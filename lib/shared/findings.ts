@@ -20,7 +20,8 @@ export interface Finding {
   look: boolean;
 }
 
-export const thin = '\u202f';
+/** Between a number and its unit. Archivo draws the narrow U+202F with hardly any width, so the plain no-break space. */
+export const gap = '\u00a0';
 
 export function readingsOfShot(metrics: readonly Metric[]): Reading[] {
   return metrics.map((m) => ({
@@ -66,7 +67,7 @@ export function exposureFinding(readings: readonly Reading[]): Finding | null {
   const bias = find(readings, 'exposure.bias');
   if (!bias) return null;
   const words = stopsInWords(bias.value);
-  const number = `${signed(bias.value, 2)} ± ${bias.expanded.toFixed(2)}${thin}EV`;
+  const number = `${signed(bias.value, 2)} ± ${bias.expanded.toFixed(2)}${gap}EV`;
   if (words === '') {
     return { title: 'Exposure is right', detail: `${number} from mid grey.`, look: false };
   }
@@ -101,7 +102,7 @@ export function stationSharpness(readings: readonly Reading[]): Sharpness[] {
 
 const mean = (values: readonly number[]) =>
   values.reduce((sum, v) => sum + v, 0) / Math.max(values.length, 1);
-const percent = (share: number) => `${Math.round(share * 100)}${thin}%`;
+const percent = (share: number) => `${Math.round(share * 100)}${gap}%`;
 
 /** Below these shares of the middle, a corner is worth a headline (common practice, no source). */
 const evenCorners = 0.85;
@@ -119,7 +120,7 @@ export function sharpnessFinding(readings: readonly Reading[]): Finding | null {
   const where = placeWords[worst.id] ?? worst.id;
   const others = mean(corners.slice(1).map((s) => s.mtf50));
   const otherLoss = 1 - others / centre.mtf50;
-  const middle = `The middle resolves ${centre.mtf50.toFixed(3)}${thin}cycles per pixel.`;
+  const middle = `The middle resolves ${centre.mtf50.toFixed(3)}${gap}cycles per pixel.`;
   if (otherLoss < -0.1 && corners.length > 1) {
     return {
       title: 'The middle is softer than the corners',
@@ -157,7 +158,7 @@ export function colourFinding(readings: readonly Reading[]): Finding | null {
   if (!saturation) return null;
   const hue = find(readings, 'colour.hue');
   const error = find(readings, 'colour.error');
-  const detail = error ? `Mean colour error ${error.value.toFixed(1)}${thin}ΔE00.` : '';
+  const detail = error ? `Mean colour error ${error.value.toFixed(1)}${gap}ΔE00.` : '';
   const even = !hue || hue.value <= evenHue;
   const off = Math.round(saturation.value - 100);
   if (Math.abs(off) < 4) {
@@ -165,7 +166,7 @@ export function colourFinding(readings: readonly Reading[]): Finding | null {
       ? { title: 'Colours as strong as they should be', detail, look: false }
       : { title: `Hues shifted by ${Math.round(hue.value)}°`, detail, look: true };
   }
-  const strength = `${Math.abs(off)}${thin}% ${off > 0 ? 'strong' : 'weak'}`;
+  const strength = `${Math.abs(off)}${gap}% ${off > 0 ? 'strong' : 'weak'}`;
   return {
     title: `Colours ${strength}, ${even ? 'evenly' : 'unevenly'}`,
     detail,
@@ -179,7 +180,7 @@ export function fringeFinding(readings: readonly Reading[]): Finding | null {
   if (!red || !blue) return null;
   const [name, worst] = Math.abs(red.value) >= Math.abs(blue.value) ? ['Red', red] : ['Blue', blue];
   const size = Math.abs(worst.value);
-  const number = `${size.toFixed(1)}${thin}px`;
+  const number = `${size.toFixed(1)}${gap}px`;
   if (size < 0.5) {
     return {
       title: 'Hardly any colour fringes',
@@ -199,7 +200,7 @@ export function whiteFinding(readings: readonly Reading[]): Finding | null {
   const a = find(readings, 'white.a');
   const b = find(readings, 'white.b');
   if (!error || !a || !b) return null;
-  const number = `${error.value.toFixed(1)}${thin}ΔC*ab from neutral.`;
+  const number = `${error.value.toFixed(1)}${gap}ΔC*ab from neutral.`;
   if (error.value < 3) return { title: 'Greys are neutral', detail: number, look: false };
   const alongB = Math.abs(b.value) >= Math.abs(a.value);
   const warm = b.value > 0 ? 'yellow' : 'blue';

@@ -1,7 +1,7 @@
 import { expect, test } from 'vitest';
 import type { Capture } from '@/analysis/image';
 import { settingsOf } from '@/components/shots/capture-panel';
-import { thin } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/findings';
 
 const nothing: Capture = {
   make: null,
@@ -27,7 +27,7 @@ test('settings are said as a photographer says them', () => {
     focalLength: 6.2,
     exposureBias: -0.333,
   };
-  expect(settingsOf(capture)).toBe(`1/125${thin}s at f/5.6, ISO 100, 6.2${thin}mm, −0.3${thin}EV`);
+  expect(settingsOf(capture)).toBe(`1/125${gap}s at f/5.6, ISO 100, 6.2${gap}mm, −0.3${gap}EV`);
 });
 
 test('what the file does not tell is left out', () => {

@@ -9,7 +9,7 @@ import {
   money,
   parseMoney,
 } from '@/lib/client/format';
-import { thin } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/findings';
 
 // Source: ISO 4217, minor units: EUR 2, JPY 0.
 test.each([
@@ -45,16 +45,16 @@ test.each([
 });
 
 test('sizes, pace and booked time carry their unit', () => {
-  expect(bytes(4_840_000)).toBe(`4.8${thin}MB`);
-  expect(bytes(300)).toBe(`1${thin}kB`);
-  expect(about(9)).toBe(`about 9${thin}s`);
-  expect(about(130)).toBe(`about 2${thin}min`);
-  expect(bookedTime(95)).toBe(`1${thin}h 35${thin}min`);
+  expect(bytes(4_840_000)).toBe(`4.8${gap}MB`);
+  expect(bytes(300)).toBe(`1${gap}kB`);
+  expect(about(9)).toBe(`about 9${gap}s`);
+  expect(about(130)).toBe(`about 2${gap}min`);
+  expect(bookedTime(95)).toBe(`1${gap}h 35${gap}min`);
 });
 
 // Common practice, no source: cameras label times below 0.4 s as fractions.
 test.each([
-  [0.008, `1/125${thin}s`],
-  [0.5, `0.5${thin}s`],
-  [2, `2${thin}s`],
+  [0.008, `1/125${gap}s`],
+  [0.5, `0.5${gap}s`],
+  [2, `2${gap}s`],
 ])('%d s is written %s', (seconds, words) => expect(exposureTime(seconds)).toBe(words));

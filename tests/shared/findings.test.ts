@@ -5,13 +5,13 @@ import {
   exposureFinding,
   findings,
   fringeFinding,
+  gap,
   gradeFinding,
   type Reading,
   sharpnessFinding,
   shotHeadline,
   stationSharpness,
   stopsInWords,
-  thin,
   whiteFinding,
 } from '@/lib/shared/findings';
 import type { RuleOutcome } from '@/lib/shared/report';
@@ -42,7 +42,7 @@ describe('exposure', () => {
   test('names the direction, the number with its doubt and the remedy', () => {
     const finding = exposureFinding([reading('exposure.bias', -0.68)]);
     expect(finding?.title).toBe('Two thirds of a stop dark');
-    expect(finding?.detail).toBe(`−0.68 ± 0.06${thin}EV. Compensation of +0.7 would put it right.`);
+    expect(finding?.detail).toBe(`−0.68 ± 0.06${gap}EV. Compensation of +0.7 would put it right.`);
     expect(finding?.look).toBe(true);
   });
   test('over-exposure is bright and its remedy negative', () => {
@@ -62,13 +62,13 @@ describe('sharpness', () => {
   // Truth by construction: 0.174 / 0.300 = 0.58, so 42 % are lost.
   test('one soft corner is named with its loss against the middle', () => {
     const finding = sharpnessFinding(corners(0.3, 0.25, 0.25, 0.25, 0.174));
-    expect(finding?.title).toBe(`The lower right corner is 42${thin}% softer`);
+    expect(finding?.title).toBe(`The lower right corner is 42${gap}% softer`);
     expect(finding?.look).toBe(true);
   });
   // Truth: 1 − 0.205 / 0.300 = 31.7 %.
   test('four corners that fall off alike are said to be even', () => {
     const finding = sharpnessFinding(corners(0.3, 0.2, 0.21, 0.2, 0.21));
-    expect(finding?.title).toBe(`The corners are 32${thin}% softer, evenly`);
+    expect(finding?.title).toBe(`The corners are 32${gap}% softer, evenly`);
   });
   test('corners near the middle are sharp', () => {
     expect(sharpnessFinding(corners(0.3, 0.28, 0.29, 0.28, 0.27))?.title).toBe(
@@ -96,11 +96,11 @@ describe('sharpness', () => {
 describe('colour', () => {
   test('strong and even', () => {
     const finding = colourFinding([reading('colour.saturation', 118), reading('colour.hue', 2)]);
-    expect(finding?.title).toBe(`Colours 18${thin}% strong, evenly`);
+    expect(finding?.title).toBe(`Colours 18${gap}% strong, evenly`);
   });
   test('weak and uneven wants a look', () => {
     const finding = colourFinding([reading('colour.saturation', 90), reading('colour.hue', 9)]);
-    expect(finding).toMatchObject({ title: `Colours 10${thin}% weak, unevenly`, look: true });
+    expect(finding).toMatchObject({ title: `Colours 10${gap}% weak, unevenly`, look: true });
   });
   test('right in strength but turned in hue', () => {
     const finding = colourFinding([reading('colour.saturation', 101), reading('colour.hue', 7.4)]);
@@ -111,7 +111,7 @@ describe('colour', () => {
       reading('fringe.red', 0.4, 'corners'),
       reading('fringe.blue', -1.24, 'corners'),
     ]);
-    expect(finding?.title).toBe(`Blue fringes of 1.2${thin}px in the corners`);
+    expect(finding?.title).toBe(`Blue fringes of 1.2${gap}px in the corners`);
   });
   // Source: CIE 15, CIELAB: +a* is towards magenta-red, −a* green, +b* yellow, −b* blue.
   test.each([
