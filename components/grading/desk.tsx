@@ -45,9 +45,10 @@ export function Desk({
         title={`${unit.maker} ${unit.model}`}
       />
       <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1fr)_minmax(0,1.3fr)]">
-        <div className="grid gap-3.5 lg:sticky lg:top-3.5">
+        <div className="grid gap-3.5">
           <SignPanel unit={unit} proposal={proposal} />
           <WorkSummary unit={unit} />
+          <ChecksPanel unit={{ ...unit, may: { ...unit.may, check: false } }} />
         </div>
         <Panel aria-label="Rules">
           <PanelHead
@@ -61,7 +62,6 @@ export function Desk({
       </div>
       {run ? <RunFindings run={run} shot={shot} graded /> : null}
       {crops.length > 0 ? <Crops crops={crops} /> : null}
-      <ChecksPanel unit={{ ...unit, may: { ...unit.may, check: false } }} />
     </>
   );
 }

@@ -8,9 +8,9 @@ export function Crops({ crops }: { crops: NonNullable<ShotDetail['analysis']>['c
   return (
     <Panel aria-label="Crops">
       <PanelHead title="Pixel for pixel" aside="100 %" />
-      <ul className="flex flex-wrap gap-3">
+      <ul className="flex gap-3 max-sm:overflow-x-auto sm:flex-wrap">
         {crops.map((crop) => (
-          <li key={crop.station} className="max-w-full">
+          <li key={crop.station} className="max-sm:shrink-0 sm:max-w-full">
             <span className="block overflow-hidden rounded-well bg-well">
               <Image
                 src={crop.url}

@@ -47,13 +47,13 @@ export function CheckRow({
       onKeyDown={editable ? onKeyDown : undefined}
       className="border-line-2 border-t py-1.5 first:border-0 focus-visible:rounded-well"
     >
-      <div className="flex min-h-9 flex-wrap items-center justify-between gap-x-3 gap-y-1">
-        <span className="flex items-center gap-2.5">
+      <div className="flex min-h-9 items-center justify-between gap-3">
+        <span className="flex min-w-0 items-center gap-2.5 leading-tight">
           <OutcomeDisc outcome={outcome} />
           {label}
         </span>
         {editable ? (
-          <span className="flex">
+          <span className="flex shrink-0">
             {outcomes.map(({ value, word: text }) => (
               <button
                 key={value}
