@@ -51,9 +51,13 @@ export default async function setup(project: TestProject): Promise<() => Promise
 }
 
 async function fillShop(environment: Record<string, string>): Promise<void> {
+  const before = { ...process.env };
   Object.assign(process.env, environment);
   const { openShop } = await import('@/fixtures/demo/open-shop');
   const { db } = await import('@/lib/server/db');
   await openShop();
   await db().sequelize.close();
+  // The tests' processes inherit what is set here, and must not take it for their own settings.
+  for (const name of Object.keys(environment)) delete process.env[name];
+  Object.assign(process.env, before);
 }

@@ -37,6 +37,8 @@ function processes(): number[] {
     });
 }
 
+const hasEnded = (child: ChildProcess) => child.exitCode !== null || child.signalCode !== null;
+
 async function start(): Promise<{ child: ChildProcess; output: () => string; url: string }> {
   const child = spawn(process.execPath, ['scripts/start.mjs'], {
     env: { ...process.env, DATA: folder, PORT: '3700' },
@@ -62,7 +64,7 @@ test('starts on an empty folder, ends at SIGTERM with all it started, survives k
   expect((await fetch(`${first.url}/sign-in`)).status).toBe(200);
 
   first.child.kill('SIGTERM');
-  await until(() => processes().length === 0, 30_000);
+  await until(() => processes().length === 0 && hasEnded(first.child), 30_000);
   expect(first.child.exitCode).toBe(0);
 
   const second = await start();
@@ -74,6 +76,6 @@ test('starts on an empty folder, ends at SIGTERM with all it started, survives k
   const log = readFileSync(join(folder, 'seed.log'), 'utf8');
   expect(log).not.toContain('Error');
   third.child.kill('SIGINT');
-  await until(() => processes().length === 0, 30_000);
+  await until(() => processes().length === 0 && hasEnded(third.child), 30_000);
   expect(third.child.exitCode).toBe(0);
 });
