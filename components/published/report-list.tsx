@@ -29,7 +29,7 @@ export function ReportList({ first, mayWithdraw }: { first: ReportRow[]; mayWith
         {reports.map((report) => (
           <li
             key={report.slug}
-            className="grid grid-cols-[48px_minmax(0,1fr)] items-center gap-x-4 gap-y-1 border-line-2 border-t py-3 first:border-0 md:grid-cols-[56px_minmax(0,1.2fr)_minmax(0,1fr)_auto]"
+            className="grid grid-cols-[48px_minmax(0,1fr)] items-center gap-x-4 gap-y-1 border-line-2 border-t py-3 first:border-0 md:grid-cols-[56px_minmax(0,1.2fr)_minmax(0,1fr)_120px]"
           >
             <span className="font-[680] text-[28px] leading-none">
               <span className="sr-only">Grade </span>
@@ -55,7 +55,7 @@ export function ReportList({ first, mayWithdraw }: { first: ReportRow[]; mayWith
                 : `Stands, version ${report.version}`}
               <span className="block">Published {day(report.publishedAt)}</span>
             </span>
-            <span className="max-md:col-start-2">
+            <span className="md:text-right max-md:col-start-2">
               {mayWithdraw && !report.withdrawnAt ? <WithdrawDialog report={report} /> : null}
             </span>
           </li>

@@ -50,12 +50,12 @@ export function PeoplePanel({ first, email }: { first: People; email: string }) 
                 ))}
               </select>
               {member.email === email ? (
-                <span className="label w-20 text-center">you</span>
+                <span className="label w-24 text-center">you</span>
               ) : (
                 <Button
                   variant="quiet"
                   size="small"
-                  className="w-20"
+                  className="w-24 whitespace-nowrap px-2"
                   busy={change.isPending && change.variables.id === member.id}
                   onClick={() => change.mutate({ id: member.id, active: !member.active })}
                 >

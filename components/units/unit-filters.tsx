@@ -56,7 +56,7 @@ export function StateFilter({
   const all = unitStates.reduce((sum, name) => sum + counts[name], 0);
   const shown = unitStates.filter((name) => counts[name] > 0 || name === state);
   return (
-    <fieldset className="-mx-1 flex gap-1 overflow-x-auto px-1 py-1 md:flex-wrap">
+    <fieldset className="-mx-1 flex min-w-0 max-w-[calc(100%+8px)] gap-1 overflow-x-auto px-1 py-1 md:flex-wrap">
       <legend className="sr-only">State</legend>
       <FilterButton on={!state} label="All" count={all} onClick={() => onState(undefined)} />
       {shown.map((name) => (

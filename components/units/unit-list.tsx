@@ -38,7 +38,7 @@ export function UnitList({
     { key: 'n', label: 'Take a camera in', run: () => router.push('/arrivals#take-in') },
   ]);
   return (
-    <Panel className="grid gap-3">
+    <Panel className="grid grid-cols-[minmax(0,1fr)] gap-3">
       <div className="flex flex-wrap items-center justify-between gap-x-4 gap-y-2">
         <StateFilter state={query.state} counts={counts} onState={(state) => ask({ state })} />
         <UnitSearch q={query.q ?? ''} onSearch={(q) => ask({ q: q === '' ? undefined : q })} />
