@@ -58,7 +58,7 @@ test.skipIf(!hasPoppler).each([
       for (let y = Math.round(centreY) - reach; y <= centreY + reach; y++) {
         for (let x = Math.round(centreX) - reach; x <= centreX + reach; x++) {
           if (Math.hypot(x + 0.5 - centreX, y + 0.5 - centreY) > reach) continue; // stay on the pad
-        // 162 is the pad's code, 85 the square's: a pixel half covered counts half.
+          // 162 is the pad's code, 85 the square's: a pixel half covered counts half.
           const share = Math.min(1, Math.max(0, (162 - data[y * info.width + x]!) / (162 - 85)));
           dark += share;
           sumX += share * (x + 0.5);
