@@ -32,12 +32,24 @@ export function Desk({
       <PageHead
         label={
           <>
-            <Link href="/grading">Grading</Link> · <Tag>{unit.tag}</Tag>
+            <Link
+              className="underline decoration-line underline-offset-3 hover:decoration-current"
+              href="/grading"
+            >
+              Grading
+            </Link>{' '}
+            · <Tag>{unit.tag}</Tag>
             {run ? (
               <>
                 {' '}
-                · <Link href={`/units/${unit.tag}/runs/${run.id}`}>{run.title}</Link>, {run.done}{' '}
-                shots
+                ·{' '}
+                <Link
+                  className="underline decoration-line underline-offset-3 hover:decoration-current"
+                  href={`/units/${unit.tag}/runs/${run.id}`}
+                >
+                  {run.title}
+                </Link>
+                , {run.done} shots
               </>
             ) : null}
           </>

@@ -20,7 +20,14 @@ export function GradingQueue({ first, now }: { first: GradingRow[]; now: number 
       {queue.length === 0 ? (
         <EmptyState title="Nothing awaits a grade">
           A refurbisher sends a unit here when its test run is measured. What is open now stands on
-          the <Link href="/bench?state=testing">bench, in testing</Link>.
+          the{' '}
+          <Link
+            className="underline decoration-line underline-offset-3 hover:decoration-current"
+            href="/bench?state=testing"
+          >
+            bench, in testing
+          </Link>
+          .
         </EmptyState>
       ) : (
         <ul>

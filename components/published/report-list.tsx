@@ -40,7 +40,11 @@ export function ReportList({ first, mayWithdraw }: { first: ReportRow[]; mayWith
               )}
             </span>
             <span className="min-w-0">
-              <Link href={`/r/${report.slug}`} data-row className="font-semibold">
+              <Link
+                href={`/r/${report.slug}`}
+                data-row
+                className="font-semibold underline decoration-line underline-offset-3 hover:decoration-current"
+              >
                 {report.maker} {report.model}
               </Link>
               <span className="block">

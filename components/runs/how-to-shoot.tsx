@@ -20,9 +20,20 @@ export function HowToShoot({ action }: { action: ReactNode }) {
         ))}
       </ol>
       <p className="mt-3">
-        <a href="/api/targets/pdf?shape=4x3&paper=A3">Target for 4 : 3 frames</a>
+        <a
+          className="underline decoration-line underline-offset-3 hover:decoration-current"
+          href="/api/targets/pdf?shape=4x3&paper=A3"
+        >
+          Target for 4 : 3 frames
+        </a>
         {' · '}
-        <a href="/api/targets/pdf?shape=3x2&paper=A3">for 3 : 2 frames</a> (A3, PDF)
+        <a
+          className="underline decoration-line underline-offset-3 hover:decoration-current"
+          href="/api/targets/pdf?shape=3x2&paper=A3"
+        >
+          for 3 : 2 frames
+        </a>{' '}
+        (A3, PDF)
       </p>
     </EmptyState>
   );

@@ -27,7 +27,7 @@ export function RunToolbar({
           }))}
         />
       ) : (
-        <h2>{run.shots === 1 ? 'One shot' : `${run.shots} shots`}</h2>
+        <h2>{headline(run.shots)}</h2>
       )}
       <div className="flex flex-wrap items-center gap-x-5 gap-y-2">
         <Measuring run={run} />
@@ -35,6 +35,11 @@ export function RunToolbar({
       </div>
     </div>
   );
+}
+
+function headline(shots: number): string {
+  if (shots === 0) return 'Pictures are coming in';
+  return shots === 1 ? 'One shot' : `${shots} shots`;
 }
 
 function Measuring({ run }: { run: RunDetail }) {

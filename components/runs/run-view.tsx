@@ -42,7 +42,10 @@ export function RunView({
       <PageHead
         label={
           <>
-            <Link href={`/units/${run.unit.tag}`}>
+            <Link
+              className="underline decoration-line underline-offset-3 hover:decoration-current"
+              href={`/units/${run.unit.tag}`}
+            >
               <Tag>{run.unit.tag}</Tag> {run.unit.maker} {run.unit.model}
             </Link>{' '}
             · {run.phase === 'before' ? 'before' : 'after'} the repair

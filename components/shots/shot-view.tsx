@@ -29,10 +29,19 @@ export function ShotView({ first }: { first: ShotDetail }) {
       <PageHead
         label={
           <>
-            <Link href={`/units/${shot.unit.tag}`}>
+            <Link
+              className="underline decoration-line underline-offset-3 hover:decoration-current"
+              href={`/units/${shot.unit.tag}`}
+            >
               <Tag>{shot.unit.tag}</Tag> {shot.unit.maker} {shot.unit.model}
             </Link>{' '}
-            · <Link href={runPath(shot)}>{shot.runTitle}</Link>
+            ·{' '}
+            <Link
+              className="underline decoration-line underline-offset-3 hover:decoration-current"
+              href={runPath(shot)}
+            >
+              {shot.runTitle}
+            </Link>
           </>
         }
         title={<span className="break-all">{shot.name}</span>}

@@ -25,7 +25,12 @@ export function GradePanel({ unit }: { unit: UnitDetail }) {
       ) : null}
       {report ? (
         <p className="mt-3">
-          <Link href={`/r/${report.slug}`}>Report, version {report.version}</Link>
+          <Link
+            className="underline decoration-line underline-offset-3 hover:decoration-current"
+            href={`/r/${report.slug}`}
+          >
+            Report, version {report.version}
+          </Link>
           <span className="text-ink-2">
             , published {day(report.publishedAt)}
             {report.withdrawnAt ? `, withdrawn ${day(report.withdrawnAt)}` : ' and standing'}
