@@ -14,7 +14,7 @@ export function GradeSoFar({ proposal }: { proposal: Proposal | null }) {
         aside={proposal ? `${proposal.schemeName}, version ${proposal.schemeVersion}` : undefined}
       />
       <div className="flex flex-wrap items-center gap-x-6 gap-y-3">
-        <GradeDial letter={proposal?.letter ?? null} rules={proposal?.rules ?? []} size={150} />
+        {proposal ? <GradeDial letter={proposal.letter} rules={proposal.rules} size={150} /> : null}
         <div className="grid min-w-[200px] flex-1 gap-2 text-pretty text-ink-2">
           <p>{detail}</p>
           {doubts.slice(0, 3).map((rule) => (

@@ -3,7 +3,7 @@
 import { useQueryClient } from '@tanstack/react-query';
 import Link from 'next/link';
 import { Tag } from '@/components/ui/chip';
-import { PageHead } from '@/components/ui/panel';
+import { PageHead, Panel } from '@/components/ui/panel';
 import { useRun, useShot } from '@/lib/client/queries';
 import { useRunEvents, withShot } from '@/lib/client/use-run-events';
 import { useUploads } from '@/lib/client/use-uploads';
@@ -63,7 +63,18 @@ export function RunView({
           <ShotStrip tag={run.unit.tag} runId={run.id} shots={run.shotList} />
         )}
       </DropZone>
-      {run.shots > 0 ? <RunFindings run={run} shot={shown ? shot : null} /> : null}
+      {run.results.length > 0 ? <RunFindings run={run} shot={shown ? shot : null} /> : null}
+      {run.results.length === 0 && run.shots > 0 ? <NothingYet /> : null}
     </>
+  );
+}
+
+function NothingYet() {
+  return (
+    <Panel>
+      <p className="text-ink-2">
+        Findings appear here, one after the other, with the first measured shot of the target.
+      </p>
+    </Panel>
   );
 }
