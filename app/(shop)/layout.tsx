@@ -37,7 +37,7 @@ export default async function ShopLayout({ children }: { children: ReactNode }) 
         </div>
         <main
           id="main"
-          className="grid max-w-[1720px] content-start gap-3.5 px-3 pt-2 pb-24 md:pt-[18px] md:pr-6 md:pb-10 md:pl-1.5"
+          className="grid max-w-[1720px] grid-cols-[minmax(0,1fr)] content-start gap-3.5 px-3 pt-2 pb-24 md:pt-[18px] md:pr-6 md:pb-10 md:pl-1.5"
         >
           {children}
         </main>

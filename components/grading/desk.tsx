@@ -57,7 +57,7 @@ export function Desk({
         title={`${unit.maker} ${unit.model}`}
       />
       <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1fr)_minmax(0,1.3fr)]">
-        <div className="grid gap-3.5">
+        <div className="grid grid-cols-[minmax(0,1fr)] gap-3.5">
           <SignPanel unit={unit} proposal={proposal} />
           <WorkSummary unit={unit} />
           <ChecksPanel unit={{ ...unit, may: { ...unit.may, check: false } }} />

@@ -53,10 +53,10 @@ export function ShotView({ first }: { first: ShotDetail }) {
         </ErrorState>
       ) : null}
       <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1.7fr)_minmax(0,1fr)]">
-        <div className="grid gap-3.5">
+        <div className="grid grid-cols-[minmax(0,1fr)] gap-3.5">
           <PicturePanel shot={shot} />
         </div>
-        <div className="grid gap-3.5">
+        <div className="grid grid-cols-[minmax(0,1fr)] gap-3.5">
           {analysis?.warnings.length ? <Warnings warnings={analysis.warnings} /> : null}
           {analysis ? <CapturePanel capture={analysis.capture} /> : null}
           <AnalysesPanel shot={shot} />
