@@ -25,7 +25,7 @@ if (cast) {
 }
 writeFileSync(join(folder, 'seeded'), new Date().toISOString());
 await db().sequelize.close();
-process.disconnect?.();
+process.exit(0);
 
 /** Photographs one unit after the other, and signs each as soon as the server has measured it. */
 async function throughTheTest(cast: Cast): Promise<void> {
