@@ -15,6 +15,8 @@ import type { Analysis, Kind, Metric, Plots, Shape, Warning } from './result.ts'
 import { measureSharpness } from './sharpness/measure-sharpness.ts';
 import { registerTarget } from './target/register.ts';
 import type { Registration } from './target/registration.ts';
+import { analyseLadder } from './time/analyse-ladder.ts';
+import { analyseLag } from './time/analyse-lag.ts';
 import { warnOfCapture, warnOfGreys, warnOfLight, warnOfRegistration } from './warnings.ts';
 
 /** Raised whenever a number can change. */
@@ -46,7 +48,7 @@ export function analyseFrame(
   options: AnalyseOptions = {},
 ): Analysis {
   const { kind = 'auto', target = 'auto', now = Date.now } = options;
-  if (kind !== 'auto' && kind !== 'target' && kind !== 'scene') {
+  if (kind === 'grey' || kind === 'flat' || kind === 'dark') {
     throw new MeasurementError(
       'kind-not-supported',
       `Photographs of kind ${kind} can’t be measured yet. Use kind target, scene or auto.`,
@@ -58,19 +60,30 @@ export function analyseFrame(
     options.onStage?.(name, now() - from);
     return result;
   };
+  const analysePart = (): Part => {
+    if (kind === 'lag') return stage('timing page', () => analyseLag(frame, capture));
+    if (kind === 'ladder') {
+      const light = registration && {
+        registration,
+        ...measureLight(frame, registration, stage),
+      };
+      return analyseLadder(frame, capture, light);
+    }
+    return registration
+      ? analyseTarget(frame, capture, registration, stage)
+      : analyseScene(frame, kind === 'auto');
+  };
   const start = now();
   const registration =
-    kind === 'scene'
+    kind === 'scene' || kind === 'lag'
       ? null
-      : stage('registration', () => findTarget(frame, target, kind === 'auto'));
+      : stage('registration', () => findTarget(frame, target, kind !== 'target'));
   const registered = now();
-  const part = registration
-    ? analyseTarget(frame, capture, registration, stage)
-    : analyseScene(frame, kind === 'auto');
+  const part = analysePart();
   const end = now();
   return {
     version: analysisVersion,
-    kind: registration ? 'target' : 'scene',
+    kind: kind === 'auto' ? (registration ? 'target' : 'scene') : kind,
     width: frame.width,
     height: frame.height,
     capture,

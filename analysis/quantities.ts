@@ -276,6 +276,30 @@ const list: Quantity[] = [
     decimals: 2,
     good: 0,
   },
+  {
+    name: 'ladder.step',
+    label: 'Step of the exposure ladder',
+    unit: 'EV',
+    source: 'ISO 516, ISO 14524',
+    decimals: 2,
+    good: 0,
+  },
+  {
+    name: 'ladder.worst',
+    label: 'Worst step of the exposure ladder',
+    unit: 'EV',
+    source: 'ISO 516, ISO 14524',
+    decimals: 2,
+    good: 'low',
+  },
+  {
+    name: 'lag.shutter',
+    label: 'Shutter lag',
+    unit: 'ms',
+    source: 'ISO 15781',
+    decimals: 0,
+    good: 'low',
+  },
 ];
 
 export const quantities: ReadonlyMap<string, Quantity> = new Map(list.map((q) => [q.name, q]));

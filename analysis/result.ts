@@ -55,6 +55,14 @@ export interface Plots {
   discs?: { id: string; x: number; y: number; radius: number }[];
   /** Light in EV against the centre on a grid over the frame, row-major. */
   shading?: { columns: number; rows: number; ev: number[] };
+  /** Dust or hot pixels, the most conspicuous first: place and diameter in px, contrast in % (of the light about it; of full scale). */
+  spots?: { x: number; y: number; diameter: number; contrast: number }[];
+  /** Dominant colours as #rrggbb, the most frequent first, with their shares of the picture. */
+  palette?: { colour: string; share: number }[];
+  /** Kind ladder: each unclipped grey's reflectance times the light at its place, and the linear luminance that came out. */
+  greys?: { light: number; luminance: number; uncertainty: number }[];
+  /** Kind lag: what the timing page says, ms, and how many of the screen's frames the exposure lasted. */
+  timing?: { frameTime: number; elapsed: number; exposureFrames: number };
 }
 
 export interface StationPlot {
@@ -91,6 +99,8 @@ export interface Analysis {
   /** Version of the measuring code; raised whenever a number can change. */
   version: string;
   kind: Kind;
+  /** How surely the kind was told from the picture, 0…1; absent when it was given. */
+  kindConfidence?: number;
   width: number;
   height: number;
   capture: Capture;
@@ -99,4 +109,10 @@ export interface Analysis {
   warnings: Warning[];
   milliseconds: { decode: number; register: number; measure: number; total: number };
   plots: Plots;
+}
+
+/** What several photographs give together: a ladder, a series of shots of the timing page. */
+export interface GroupResult {
+  metrics: Metric[];
+  warnings: Warning[];
 }

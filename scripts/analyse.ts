@@ -4,11 +4,9 @@ import { z } from 'zod';
 import type { AnalyseOptions } from '../analysis/analyse';
 import { analyseBytes } from '../analysis/analyse-bytes';
 import { MeasurementError } from '../analysis/errors';
-import {
-  type AnalysisOutput,
-  type FailureOutput,
-  toAnalysisOutput,
-} from '../lib/shared/analysis-output';
+import type { Analysis } from '../analysis/result';
+import { isGroupKind, measureGroup } from '../analysis/time/group';
+import { type FailureOutput, toAnalysisOutput, toGroupOutput } from '../lib/shared/analysis-output';
 
 const usage =
   'Usage: npm run --silent analyse -- [--kind auto|target|grey|flat|dark|ladder|lag|scene] [--target auto|4x3|3x2] FILE...';
@@ -18,20 +16,34 @@ const optionsSchema = z.object({
   target: z.enum(['auto', '4x3', '3x2']),
 });
 
-/** One JSON object a line, one a file, in the order given; exit status 1 when a file couldn't be measured, 2 on wrong usage. */
+/**
+ * One JSON object a line, one a file, in the order given, and for a ladder or a series of the timing page one more of the group;
+ * exit status 1 when a file couldn't be measured, 2 on wrong usage.
+ */
 async function main(): Promise<number> {
   const request = readArguments();
   if (!request) {
     console.error(usage);
     return 2;
   }
-  let status = 0;
+  const { kind = 'auto' } = request.options;
+  const measured: { name: string; analysis: Analysis }[] = [];
   for (const file of request.files) {
-    const line = await analyseFile(file, request.options);
-    if ('error' in line) status = 1;
-    process.stdout.write(`${JSON.stringify(line)}\n`);
+    const answer = await analyseFile(file, request.options);
+    const failed = 'error' in answer;
+    print(failed ? answer : toAnalysisOutput(file, answer));
+    // What a group keeps of a photograph is small: its pixels are gone.
+    if (!failed) measured.push({ name: file, analysis: answer });
   }
-  return status;
+  if (isGroupKind(kind)) {
+    const names = measured.map(({ name }) => name);
+    print(toGroupOutput(kind, names, measureGroup(kind, measured)));
+  }
+  return measured.length < request.files.length ? 1 : 0;
+}
+
+function print(line: object): void {
+  process.stdout.write(`${JSON.stringify(line)}\n`);
 }
 
 function readArguments(): { files: string[]; options: AnalyseOptions } | null {
@@ -55,14 +67,14 @@ function readArguments(): { files: string[]; options: AnalyseOptions } | null {
 async function analyseFile(
   file: string,
   options: AnalyseOptions,
-): Promise<AnalysisOutput | FailureOutput> {
+): Promise<Analysis | FailureOutput> {
   const bytes = await readFile(file).catch(() => null);
   if (!bytes) {
     const message = 'The file can’t be read. Check its name and that you may open it.';
     return { file, error: { code: 'file-unreadable', message } };
   }
   try {
-    return toAnalysisOutput(file, await analyseBytes(bytes, options));
+    return await analyseBytes(bytes, options);
   } catch (error) {
     if (error instanceof MeasurementError) {
       return { file, error: { code: error.code, message: error.message } };

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import type { Analysis, Metric } from '@/analysis/result';
+import type { Analysis, GroupResult, Metric } from '@/analysis/result';
 
 /** One line of the analyse command; its fields are promised to whoever reads it by machine. */
 const text = z.string().nullable();
@@ -30,6 +30,12 @@ export const metricOutputSchema = z.strictObject({
   lwph: z.number().optional(),
 });
 
+export const warningOutputSchema = z.strictObject({
+  code: z.string().regex(/^[a-z0-9]+(-[a-z0-9]+)*$/),
+  message: z.string(),
+  zone: z.string().optional(),
+});
+
 export const analysisOutputSchema = z.strictObject({
   file: z.string(),
   kind: z.enum(['target', 'grey', 'flat', 'dark', 'ladder', 'lag', 'scene']),
@@ -46,13 +52,7 @@ export const analysisOutputSchema = z.strictObject({
     })
     .optional(),
   metrics: z.array(metricOutputSchema),
-  warnings: z.array(
-    z.strictObject({
-      code: z.string().regex(/^[a-z0-9]+(-[a-z0-9]+)*$/),
-      message: z.string(),
-      zone: z.string().optional(),
-    }),
-  ),
+  warnings: z.array(warningOutputSchema),
   milliseconds: z.strictObject({
     decode: z.number(),
     register: z.number(),
@@ -64,8 +64,16 @@ export const failureOutputSchema = z.strictObject({
   file: z.string(),
   error: z.strictObject({ code: z.string(), message: z.string() }),
 });
+/** What a ladder's files, or those of the timing page, give together: one line after theirs. */
+export const groupOutputSchema = z.strictObject({
+  group: z.enum(['ladder', 'lag']),
+  files: z.array(z.string()),
+  metrics: z.array(metricOutputSchema),
+  warnings: z.array(warningOutputSchema),
+});
 export type AnalysisOutput = z.infer<typeof analysisOutputSchema>;
 export type FailureOutput = z.infer<typeof failureOutputSchema>;
+export type GroupOutput = z.infer<typeof groupOutputSchema>;
 
 /** The part of an analysis that the command prints: no drawings' data, numbers rounded to what they can mean. */
 export function toAnalysisOutput(file: string, analysis: Analysis): AnalysisOutput {
@@ -87,6 +95,15 @@ export function toAnalysisOutput(file: string, analysis: Analysis): AnalysisOutp
       total: roundTenth(milliseconds.total),
     },
   };
+}
+
+/** @param files the ones that could be measured */
+export function toGroupOutput(
+  group: GroupOutput['group'],
+  files: string[],
+  result: GroupResult,
+): GroupOutput {
+  return { group, files, metrics: result.metrics.map(roundMetric), warnings: result.warnings };
 }
 
 function roundMetric(metric: Metric): Metric {
