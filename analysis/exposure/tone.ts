@@ -5,6 +5,7 @@ import type { Frame } from '../image.ts';
 import type { Plots } from '../result.ts';
 import { type FitPoint, type LocalFit, localFit } from './local-fit.ts';
 import { monotoneCurve } from './monotone-curve.ts';
+import { smoothingSpline } from './smoothing-spline.ts';
 
 /**
  * The camera's tone response (opto-electronic conversion function, ISO 14524:2009), read from the twelve greys:
@@ -110,29 +111,32 @@ function toPoints(
   });
 }
 
-/** Linear light of the file → relative light: smoothed at each grey, monotone between them. */
-function responseCurve(points: readonly FitPoint[]): ((linear: number) => number) | null {
-  const sorted = [...points].sort((a, b) => a.x - b.x);
+/** Knots of the table that a spline is turned into: close enough that straight pieces would do. */
+const knots = 64;
+
+/** Linear light of the file → relative light: no smoother than the points ask for, monotone, straight in log–log beyond them. */
+export function responseCurve(points: readonly FitPoint[]): ((linear: number) => number) | null {
+  const spline = smoothingSpline(points);
+  if (!spline) return null;
+  const all = points.map((p) => p.x);
+  const low = Math.min(...all);
+  const high = Math.max(...all);
   const x: number[] = [];
   const y: number[] = [];
-  for (const point of sorted) {
-    const fit = localFit(sorted, point.x, reach);
-    if (!fit) return null;
-    const rises = x.length === 0 || (point.x > x.at(-1)! + 1e-4 && fit.value > y.at(-1)! + 1e-4);
-    if (rises) {
-      x.push(point.x);
-      y.push(fit.value);
-    }
+  for (let i = 0; i <= knots; i++) {
+    const at = low + ((high - low) * i) / knots;
+    const value = spline(at);
+    if (x.length > 0 && value <= y.at(-1)! + 1e-5) continue;
+    x.push(at);
+    y.push(value);
   }
   if (x.length < fewestGreys) return null;
-  const end = x.length - 1;
-  const lowSlope = (y[2]! - y[0]!) / (x[2]! - x[0]!);
-  const highSlope = (y[end]! - y[end - 2]!) / (x[end]! - x[end - 2]!);
-  const curve = monotoneCurve(x, y, lowSlope, highSlope);
+  const slope = (from: number, to: number) => (y[to]! - y[from]!) / (x[to]! - x[from]!);
+  const curve = monotoneCurve(x, y, slope(0, 2), slope(x.length - 3, x.length - 1));
   return (linear) => (linear > 0 ? 2 ** curve(Math.log2(linear)) : 0);
 }
 
-function stopsAt(
+export function stopsAt(
   points: readonly FitPoint[],
   range: readonly [number, number],
   luminance: number,
