@@ -90,9 +90,9 @@ async function main() {
   await check('Lint and format', ['node_modules/@biomejs/biome/bin/biome', 'check']);
   await check('Types', ['node_modules/typescript/bin/tsc', '-p', '.']);
   await check('Types of analysis/, alone', ['node_modules/typescript/bin/tsc', '-p', 'analysis']);
-  await vitest('unit', 'db');
   const { buildIfStale } = await import('./lib/built.mjs');
   await step('Build', () => buildIfStale(root));
+  await vitest('unit', 'db');
   if (browser !== missingHere) await vitest('e2e');
   else counts.skipped += readdirSync(join(root, 'tests/e2e')).filter(isTest).length;
 }

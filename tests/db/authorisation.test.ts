@@ -57,6 +57,8 @@ const table: Record<string, Who[]> = {
   'DELETE /api/sessions/[id]': signedIn,
   'PATCH /api/shop': [...owners, 'stranger'],
   'GET /api/targets/pdf': signedIn,
+  'GET /r/[slug]': anyone,
+  'GET /r/[slug]/report.json': anyone,
   'GET /r/[slug]/pictures/[name]': anyone,
 };
 
