@@ -38,7 +38,8 @@ export function measureLadder(shots: readonly LadderShot[]): GroupResult {
   if (!fit) return { metrics: [], warnings: [...warnings, tooFew] };
   if (fit.excess > changedCurve) warnings.push(curveChanged);
   const errors = chained.map((shot, i) => fit.stops[i]! - shot.nominal);
-  const covariance = (i: number, j: number) => fit.covariance[i * chained.length + j]!;
+  const covariance = (i: number, j: number) =>
+    fit.covariance[i * chained.length + j]! + (i === j ? shadingDoubt(chained[i]!) ** 2 : 0);
   const rungs = groupRungs(chained.map(({ zone }) => zone));
   const metrics = stepMetrics(rungs, errors, covariance);
   return { metrics, warnings };
@@ -90,6 +91,15 @@ function withoutApart(shots: readonly SeenShot[], warnings: Warning[]): SeenShot
   for (const { name, zone } of shots.filter((shot) => !largest.includes(shot)))
     warnings.push(leftOut(name, zone, 'it has no codes in common with the other rungs'));
   return shots.filter((shot) => largest.includes(shot));
+}
+
+/**
+ * The light at each grey is told by the shading of the background, and that through the tone curve: less surely where the background
+ * comes out so light that under a stop is left above it. EV; found by rendering.
+ */
+function shadingDoubt({ greys }: SeenShot): number {
+  const top = Math.max(...greys.map(({ light }) => light));
+  return top < 2 * background ? 0.007 : 0.002;
 }
 
 /** Repeats of one setting are one rung. */
