@@ -22,9 +22,17 @@ const parameters = 6;
 const normal = new Float64Array(parameters * parameters);
 const right = new Float64Array(parameters);
 
+/** The samples that are looked at: the first `chosenCount` entries are their indices. */
+let chosen = new Int32Array(0);
+let chosenCount = 0;
+/** How far the fit may move before the samples near it are chosen anew, px. */
+const slack = 1;
+/** A step that moves no parameter by more than 1 px moves the borders of what is near by at most so much: 4 σ, shift, tilt, bend. */
+const mostReach = 7;
+
 /**
  * Finds the edge in the samples by Gauss–Newton on every pixel near it.
- * @param shape  a fit whose tilt and bend are kept (red and blue follow green's line); absent: all six are free
+ * @param shape  a fit whose tilt and bend are kept (red, blue and luma follow green's line); absent: all six are free
  * @returns null when the pixels show no rising step
  */
 export function fitLine(samples: Samples, channel: 0 | 1 | 2, shape?: LineFit): LineFit | null {
@@ -33,13 +41,26 @@ export function fitLine(samples: Samples, channel: 0 | 1 | 2, shape?: LineFit): 
   if (!fit || !levels(samples, light, fit)) return null;
   const free = shape === undefined;
   // Most of the way on a thinned set of pixels, the last steps on all of them.
-  for (const stride of [Math.max(1, Math.floor(samples.count / thinned)), 1]) {
+  if (chosen.length < samples.count) chosen = new Int32Array(samples.distance.length);
+  const stride = Math.floor(samples.count / thinned);
+  if (stride > 1) {
+    chooseEvery(stride, samples);
     for (let iteration = 0; iteration < 8; iteration++) {
-      const change = improve(samples, light, fit, free, stride);
+      const change = improve(samples, light, fit, free);
       if (change === null) return null;
-      if (change < (stride > 1 ? 0.02 : 0.004)) break;
+      if (change < 0.02) break;
     }
-    if (stride === 1) return fit;
+  }
+  let moved = Number.POSITIVE_INFINITY;
+  for (let iteration = 0; iteration < 8; iteration++) {
+    if (moved > slack) {
+      chooseNear(samples, fit);
+      moved = 0;
+    }
+    const change = improve(samples, light, fit, free);
+    if (change === null) return null;
+    if (change < 0.004) break;
+    moved += mostReach * change;
   }
   return fit;
 }
@@ -85,26 +106,60 @@ function levels(samples: Samples, light: Float32Array, fit: LineFit): boolean {
   return fit.step > 0;
 }
 
-/** One Gauss–Newton step; returns the largest move in px, or null when the step is lost. */
+function chooseEvery(stride: number, { count }: Samples): void {
+  chosenCount = 0;
+  for (let i = 0; i < count; i += stride) chosen[chosenCount++] = i;
+}
+
+function chooseNear({ distance, along, count }: Samples, fit: LineFit): void {
+  const { shift, tilt, bend } = fit;
+  const near = nearOf(fit) + slack;
+  chosenCount = 0;
+  for (let i = 0; i < count; i++) {
+    const t = along[i]!;
+    const d = distance[i]! - shift - (tilt + bend * t) * t;
+    if (d <= near && d >= -near) chosen[chosenCount++] = i;
+  }
+}
+
+/** Pixels farther away say nothing of where the edge lies, and little of its levels. */
+function nearOf({ sigma }: LineFit): number {
+  return 4 * sigma + 2.5;
+}
+
+/** One Gauss–Newton step on the chosen samples; returns the largest move in px, or null when the step is lost. */
 function improve(
   samples: Samples,
   light: Float32Array,
   fit: LineFit,
   freeShape: boolean,
-  stride: number,
 ): number | null {
-  const { distance, along, count } = samples;
+  const { distance, along } = samples;
   const { low, step, sigma, shift, tilt, bend } = fit;
-  const near = 4 * sigma + 2.5;
-  normal.fill(0);
-  right.fill(0);
+  const near = nearOf(fit);
   const perSigma = 1 / sigma;
   const scale = -step * perSigma;
-  let squares = 0;
+  const count = chosenCount;
+  normal.fill(0);
+  right.fill(0);
   let used = 0;
-  let [sg, sgg, sgw, sgs, sww, sws, sss] = [0, 0, 0, 0, 0, 0, 0];
-  let [sw, ss, e0, e1, e2, e3] = [0, 0, 0, 0, 0, 0];
-  for (let i = 0; i < count; i += stride) {
+  // Each begins as a number of its own: taken out of one array, they would live on the heap and the loop be three times as slow.
+  let squares = 0;
+  let sg = 0;
+  let sgg = 0;
+  let sgw = 0;
+  let sgs = 0;
+  let sww = 0;
+  let sws = 0;
+  let sss = 0;
+  let sw = 0;
+  let ss = 0;
+  let e0 = 0;
+  let e1 = 0;
+  let e2 = 0;
+  let e3 = 0;
+  for (let k = 0; k < count; k++) {
+    const i = chosen[k]!;
     const t = along[i]!;
     const d = distance[i]! - shift - (tilt + bend * t) * t;
     if (d > near || d < -near) continue;
@@ -130,11 +185,20 @@ function improve(
     e3 += slope * error;
     if (freeShape && slope !== 0) addShape(t, rise, widen, slope, error);
   }
-  normal.set([used], 0);
-  normal.set([sg, sgg], parameters);
-  normal.set([sw, sgw, sww], 2 * parameters);
-  normal.set([ss, sgs, sws, sss], 3 * parameters);
-  right.set([e0, e1, e2, e3]);
+  normal[0] = used;
+  normal[6] = sg;
+  normal[7] = sgg;
+  normal[12] = sw;
+  normal[13] = sgw;
+  normal[14] = sww;
+  normal[18] = ss;
+  normal[19] = sgs;
+  normal[20] = sws;
+  normal[21] = sss;
+  right[0] = e0;
+  right[1] = e1;
+  right[2] = e2;
+  right[3] = e3;
   if (used < 24) return null;
   fit.residual = Math.sqrt(squares / Math.max(1, used - parameters));
   steady(used, step, freeShape);
