@@ -145,9 +145,11 @@ function analyseTarget(
   const traces = stage('edges', () =>
     traceEdges(frame, registration, tone?.toLight ?? frame.toLinear),
   );
-  const sharpness = stage('sharpness', () => measureSharpness(frame, registration, traces));
   const fringes = stage('fringes', () =>
     measureFringes(frame, registration, traces, frame.chromaHalved ?? false),
+  );
+  const sharpness = stage('sharpness', () =>
+    measureSharpness(frame, registration, traces, fringes),
   );
   metrics.push(...sharpness.metrics, ...fringes.metrics);
   warnings.push(...sharpness.warnings);

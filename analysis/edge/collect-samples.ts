@@ -1,4 +1,5 @@
 import type { Frame } from '../image.ts';
+import { lumaIndex } from './luma.ts';
 import type { PlacedEdge } from './place-edges.ts';
 
 /** Code → light for the three channels. */
@@ -11,8 +12,8 @@ export interface Samples {
   readonly distance: Float32Array;
   /** Position along the edge, −1 … 1 over `halfLength`. */
   readonly along: Float32Array;
-  /** Light of each channel, times the edge's `outward`, so that every profile rises with distance. */
-  readonly light: readonly [Float32Array, Float32Array, Float32Array];
+  /** Light of each channel and of luma, times the edge's `outward`, so that every profile rises with distance. */
+  readonly light: readonly [Float32Array, Float32Array, Float32Array, Float32Array];
   /** Half of the length of edge that is used, px. */
   halfLength: number;
   /** Share of pixels whose green is at either end of the scale. */
@@ -27,7 +28,7 @@ export function createSamples(): Samples {
     count: 0,
     distance: array(),
     along: array(),
-    light: [array(), array(), array()],
+    light: [array(), array(), array(), array()],
     halfLength: 0,
     clipped: 0,
   };
@@ -46,7 +47,8 @@ const padOverHalfSide = 62 / 34;
 
 /**
  * Fills `samples` with the pixels within `reach` of an edge that the pad's rim, the square's far half and its corners leave alone.
- * @param blur  deviation of the edge's blur as known so far, px
+ * @param blur       deviation of the edge's blur as known so far, px
+ * @param lumaTable  see luma.ts; null leaves the samples' luma unfilled
  */
 export function collectSamples(
   frame: Frame,
@@ -55,6 +57,7 @@ export function collectSamples(
   blur: number,
   reach: number,
   samples: Samples,
+  lumaTable: Float32Array | null,
 ): void {
   const { data, maxCode } = frame;
   const [redTable, greenTable, blueTable] = tables;
@@ -69,7 +72,7 @@ export function collectSamples(
   const low = maxCode / 255;
   const high = maxCode - low;
   const { distance, along, light } = samples;
-  const [red, green, blue] = light;
+  const [red, green, blue, luma] = light;
   const spanA = halfLength * cosine + reach * Math.abs(slope) * cosine + 1;
   const firstA = Math.max(0, Math.ceil(middleA - spanA - 0.5));
   const lastA = Math.min(endA - 1, Math.floor(middleA + spanA - 0.5));
@@ -100,6 +103,8 @@ export function collectSamples(
       red[count] = redTable[data[index]!]! * outward;
       green[count] = greenTable[code]! * outward;
       blue[count] = blueTable[data[index + 2]!]! * outward;
+      if (lumaTable)
+        luma[count] = lumaTable[lumaIndex(data[index]!, code, data[index + 2]!)]! * outward;
       count++;
     }
   }

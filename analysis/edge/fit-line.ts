@@ -35,7 +35,7 @@ const mostReach = 7;
  * @param shape  a fit whose tilt and bend are kept (red, blue and luma follow green's line); absent: all six are free
  * @returns null when the pixels show no rising step
  */
-export function fitLine(samples: Samples, channel: 0 | 1 | 2, shape?: LineFit): LineFit | null {
+export function fitLine(samples: Samples, channel: 0 | 1 | 2 | 3, shape?: LineFit): LineFit | null {
   const light = samples.light[channel];
   const fit = shape ? { ...shape } : startingFit(samples, light);
   if (!fit || !levels(samples, light, fit)) return null;

@@ -8,6 +8,7 @@ import {
   type Samples,
 } from './collect-samples.ts';
 import { fitLine, type LineFit } from './fit-line.ts';
+import { createLuma, type Luma } from './luma.ts';
 import { type PlacedEdge, placeEdges } from './place-edges.ts';
 
 export const binsPerPixel = 8;
@@ -34,6 +35,8 @@ export interface ChannelTrace {
   readonly sigma: number;
   /** Standard deviation of a pixel about the fitted step, over the step. */
   readonly residual: number;
+  /** Light from the dark side to the light side. */
+  readonly step: number;
 }
 
 export interface EdgeTrace {
@@ -47,10 +50,14 @@ export interface EdgeTrace {
   readonly red: ChannelTrace | null;
   readonly green: ChannelTrace;
   readonly blue: ChannelTrace | null;
+  /** Where the file keeps colour at half the resolution. */
+  readonly luma: ChannelTrace | null;
 }
 
 export interface Traces {
   readonly edges: readonly EdgeTrace[];
+  /** Where the file keeps colour at half the resolution. */
+  readonly luma: Luma | null;
   /** Edges that could not be read, with the reason. */
   readonly refused: readonly {
     station: string;
@@ -75,12 +82,14 @@ const fewestPixels = 80;
  */
 export function traceEdges(frame: Frame, registration: Registration, tables: LightTables): Traces {
   const least = frame.chromaHalved ? chromaReach : 0;
+  const luma = frame.chromaHalved ? createLuma(frame, tables) : null;
+  const lumaTable = luma?.table ?? null;
   const samples = createSamples();
   const edges: EdgeTrace[] = [];
   const refused: { station: string; edge: Edge; reason: 'clipped' | 'faint' | 'small' }[] = [];
   let blur = 1;
   for (const placed of placeEdges(registration)) {
-    const traced = traceEdge(frame, tables, placed, blur, least, samples);
+    const traced = traceEdge(frame, tables, lumaTable, placed, blur, least, samples);
     if (typeof traced === 'string') {
       refused.push({ station: placed.station, edge: placed.edge, reason: traced });
       continue;
@@ -88,26 +97,27 @@ export function traceEdges(frame: Frame, registration: Registration, tables: Lig
     blur = traced.green.sigma;
     edges.push(traced);
   }
-  return { edges, refused };
+  return { edges, luma, refused };
 }
 
 function traceEdge(
   frame: Frame,
   tables: LightTables,
+  lumaTable: Float32Array | null,
   placed: PlacedEdge,
   expectedBlur: number,
   least: number,
   samples: Samples,
 ): EdgeTrace | 'clipped' | 'faint' | 'small' {
   let blur = expectedBlur;
-  collectSamples(frame, tables, placed, blur, reachOf(blur, least), samples);
+  collectSamples(frame, tables, placed, blur, reachOf(blur, least), samples, lumaTable);
   if (samples.count < fewestPixels) return 'small';
   if (samples.clipped > mostClipped) return 'clipped';
   let green = fitLine(samples, 1);
   if (!green) return 'faint';
   if (Math.abs(green.sigma - blur) > 0.25 * blur) {
     blur = green.sigma;
-    collectSamples(frame, tables, placed, blur, reachOf(blur, least), samples);
+    collectSamples(frame, tables, placed, blur, reachOf(blur, least), samples, lumaTable);
     if (samples.count < fewestPixels) return 'small';
     green = fitLine(samples, 1);
   }
@@ -125,6 +135,7 @@ function traceEdge(
     red: traceChannel(samples, 0, green, least),
     green: describe(samples, 1, green, least),
     blue: traceChannel(samples, 2, green, least),
+    luma: lumaTable && traceChannel(samples, 3, green, least),
   };
 }
 
@@ -135,7 +146,7 @@ function reachOf(blur: number, least: number): number {
 
 function traceChannel(
   samples: Samples,
-  channel: 0 | 2,
+  channel: 0 | 2 | 3,
   green: LineFit,
   least: number,
 ): ChannelTrace | null {
@@ -144,13 +155,23 @@ function traceChannel(
   return describe(samples, channel, fit, least);
 }
 
-function describe(samples: Samples, channel: 0 | 1 | 2, fit: LineFit, least: number): ChannelTrace {
+function describe(
+  samples: Samples,
+  channel: 0 | 1 | 2 | 3,
+  fit: LineFit,
+  least: number,
+): ChannelTrace {
   const { shift, shiftUncertainty, sigma, residual, step } = fit;
   const profile = binSamples(samples, channel, fit, least);
-  return { profile, shift, shiftUncertainty, sigma, residual: residual / step };
+  return { profile, shift, shiftUncertainty, sigma, residual: residual / step, step };
 }
 
-function binSamples(samples: Samples, channel: 0 | 1 | 2, fit: LineFit, least: number): Profile {
+function binSamples(
+  samples: Samples,
+  channel: 0 | 1 | 2 | 3,
+  fit: LineFit,
+  least: number,
+): Profile {
   const { distance, along, count } = samples;
   const light = samples.light[channel];
   const { low, shift, tilt, bend } = fit;

@@ -1,6 +1,6 @@
 import { fitProfile, type ProfileFit, responseAt } from '../edge/fit-profile.ts';
 import { binsPerPixel, type EdgeTrace, type Traces } from '../edge/trace-edges.ts';
-import type { Frame } from '../image.ts';
+import type { Frame, Point } from '../image.ts';
 import type { Edge, Metric, Warning } from '../result.ts';
 import type { Registration } from '../target/registration.ts';
 import {
@@ -11,6 +11,7 @@ import {
   riseDistance,
 } from './read-profile.ts';
 import { type StationSharpness, summariseStations } from './summarise-stations.ts';
+import { type ChannelShifts, fitUnmixed, hasLuma, spreadOfShifts } from './unmix-luma.ts';
 
 export interface SharpnessResult {
   readonly metrics: Metric[];
@@ -44,12 +45,14 @@ const curvePoints = 33;
  * Sharpness of every station on linearised green, following ISO 12233's edge-based SFR (2014 clause 6.2, curved edges as in 2023).
  * mtf50, mtf10 in cy/px along the edge's normal; nyquist and overshoot in %, rise in px. Groups: `centre`, `partway` (image height
  * 0.3–0.75), `corners` are means of the stations there, a station being the geometric mean of its two directions.
- * Directions that can't be read are left out with a warning.
+ * Directions that can't be read are left out with a warning. Where the file keeps colour at half the resolution, green is no longer
+ * whole: luma is read in its place, and `fringes` (displacement by station, px) says what colour fringes did to it.
  */
 export function measureSharpness(
   frame: Frame,
   registration: Registration,
   traces: Traces,
+  fringes: { readonly red: ReadonlyMap<string, Point>; readonly blue: ReadonlyMap<string, Point> },
 ): SharpnessResult {
   const metrics: Metric[] = [];
   const warnings = refusals(traces);
@@ -60,7 +63,8 @@ export function measureSharpness(
     const found: EdgeSharpness[] = [];
     for (const edge of ['vertical', 'horizontal'] as const) {
       const own = traces.edges.filter((e) => e.station === id && e.edge === edge);
-      const read = readDirection(own, edge, frame.blockStep !== undefined);
+      const shifts = shiftsAt(fringes, id);
+      const read = readDirection(own, edge, { traces, shifts, frame });
       if (read === null) continue;
       if (typeof read === 'string') {
         warnings.push(unreadable(id, edge, read));
@@ -88,23 +92,54 @@ function imageHeight(frame: Frame, x: number, y: number): number {
 
 type Unreadable = 'phase' | 'noise';
 
+function shiftsAt(
+  fringes: Parameters<typeof measureSharpness>[3],
+  station: string,
+): ChannelShifts | null {
+  const red = fringes.red.get(station);
+  const blue = fringes.blue.get(station);
+  return red && blue ? { red, blue } : null;
+}
+
+interface Surroundings {
+  readonly traces: Traces;
+  readonly shifts: ChannelShifts | null;
+  readonly frame: Frame;
+}
+
 /** Both parallel edges together, or why they can't be read; null without an edge. */
 function readDirection(
   edges: readonly EdgeTrace[],
   edge: Edge,
-  compressed: boolean,
+  { traces: { luma }, shifts, frame }: Surroundings,
 ): { fit: ProfileFit; sharpness: EdgeSharpness } | Unreadable | null {
   if (edges.length === 0) return null;
   if (widestGap(edges) > mostGap) return 'phase';
+  const whole = luma && shifts && edges.every(hasLuma) ? { luma, shifts } : null;
+  const fit = whole ? fitUnmixed(edges.filter(hasLuma), whole.luma, whole.shifts) : fitGreen(edges);
+  if (!fit) return 'noise';
+  const read = crossing(fit, 0.5);
+  if (!read || read.uncertainty > mostDoubt * read.value) return 'noise';
+  const mtf50 = whole ? widened(read, unmixingDoubt(edges, whole.shifts, read.value)) : read;
+  return { fit, sharpness: sharpnessOf(fit, edge, mtf50, frame.blockStep !== undefined) };
+}
+
+function fitGreen(edges: readonly EdgeTrace[]): ProfileFit | null {
   const sigma = edges.reduce((s, e) => s + e.green.sigma, 0) / edges.length;
-  const fit = fitProfile(
+  return fitProfile(
     edges.map((e) => e.green.profile),
     sigma,
   );
-  if (!fit) return 'noise';
-  const mtf50 = crossing(fit, 0.5);
-  if (!mtf50 || mtf50.uncertainty > mostDoubt * mtf50.value) return 'noise';
-  return { fit, sharpness: sharpnessOf(fit, edge, mtf50, compressed) };
+}
+
+/** Doubt of a displacement told from halved chroma: px, and its share. Found on rendered scenes. */
+const shiftDoubt = { floor: 0.015, share: 0.05 };
+
+/** What that doubt does to mtf50: displacements blur by their variance, and a Gaussian's response falls by 0.72 of the change there. */
+function unmixingDoubt(edges: readonly EdgeTrace[], shifts: ChannelShifts, mtf50: number): number {
+  const spread = Math.sqrt(spreadOfShifts(edges, shifts));
+  const doubt = spread * Math.hypot(shiftDoubt.floor, shiftDoubt.share * spread);
+  return 0.72 * mtf50 * (2 * Math.PI * mtf50) ** 2 * doubt;
 }
 
 /** Doubt above which a sharpness is not worth showing. Our choice. */

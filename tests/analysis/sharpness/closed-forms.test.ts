@@ -9,12 +9,15 @@ import { temporaryFolder } from '../../oracles/folder';
 import { missing, runPython } from '../../oracles/oracle';
 import { type Spread, syntheticSquare } from './synthetic-square';
 
+const noFringes = { red: new Map(), blue: new Map() };
+
 function measure(spread: Spread, options: Parameters<typeof syntheticSquare>[1] = {}) {
   const { frame, registration } = syntheticSquare(spread, options);
   const result = measureSharpness(
     frame,
     registration,
     traceEdges(frame, registration, frame.toLinear),
+    noFringes,
   );
   const of = (name: string, edge = 'vertical') =>
     result.metrics.find((m) => m.name === `sharpness.${name}` && m.zone === 'C' && m.edge === edge);
