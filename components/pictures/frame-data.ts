@@ -1,10 +1,10 @@
 import type { StationPlot } from '@/analysis/result';
 import type { FramePicture } from '@/lib/shared/report';
 
-/** Below this share of the full circle a station is drawn as weak. Chosen for the drawing; grading has its own limits. */
+/** Below this share of the middle a station is drawn as weak. Chosen for the drawing; grading has its own limits. */
 const weakShare = 0.6;
 
-/** The frame's picture from one shot's stations; `peers` is the peers' mtf50 in the middle, else the shot's own middle closes a ring. */
+/** The frame's picture from one shot's stations; `peers` is the peers' mtf50 in the middle, to be compared with this middle. */
 export function framePicture(
   stations: readonly StationPlot[],
   size: { width: number; height: number },
@@ -25,7 +25,7 @@ export function framePicture(
       mtf50,
       red,
       blue,
-      weak: mtf50 !== null && mtf50 < weakShare * fullCircle,
+      weak: mtf50 !== null && mtf50 < weakShare * (middle ?? fullCircle),
     })),
   };
 }

@@ -1,4 +1,4 @@
-import { numberText } from '@/lib/shared/numbers';
+import { gap, numberText } from '@/lib/shared/numbers';
 import type { FramePicture } from '@/lib/shared/report';
 import { DataTable, Picture } from './data-table';
 import { arcPath, placeName, round } from './draw';
@@ -7,7 +7,7 @@ import { hairFactor, lengthOf } from './frame-data';
 const drawnWidth = 1200;
 
 /**
- * Results on the frame itself: each station a ring whose arc carries sharpness against `fullCircle`, and two hairs that
+ * Results on the frame itself: each station a ring whose arc carries sharpness against the middle's, and two hairs that
  * carry the displacement of red (ends in a disc) and blue (ends in a ring), exaggerated by a factor stated below.
  */
 export function FrameMap({
@@ -27,7 +27,7 @@ export function FrameMap({
     ...station,
     x: round(station.x * scale),
     y: round(station.y * scale),
-    share: station.mtf50 === null ? null : station.mtf50 / frame.fullCircle,
+    share: station.mtf50 === null ? null : station.mtf50 / closedAt(frame),
   }));
   return (
     <Picture
@@ -57,14 +57,27 @@ export function frameNote(
   frame: FramePicture,
   factor = hairFactor(frame, ringRadius(frame) * 0.92),
 ) {
-  const closed =
-    frame.fullCircleMeans === 'peers'
-      ? 'Closed ring: as sharp as other cameras of this model'
-      : 'Closed ring: as sharp as the middle';
+  const alone = middleOf(frame) === null && frame.fullCircleMeans === 'peers';
+  const closed = `Closed ring: as sharp as ${alone ? 'other cameras of this model' : `the middle${besidePeers(frame)}`}`;
   const hairs = frame.stations.some(({ red, blue }) => red || blue)
     ? ` · hairs: red (disc) and blue (ring) displacement, drawn ${factor} times too long`
     : '';
   return `${closed}${hairs}`;
+}
+
+const middleOf = (frame: FramePicture) =>
+  frame.stations.find((station) => station.id === 'C')?.mtf50 ?? null;
+
+/** What closes a ring, cy/px: the middle, so that the shares are those of the headline; without it what the picture says. */
+const closedAt = (frame: FramePicture) => middleOf(frame) || frame.fullCircle;
+
+/** How the middle compares with the peers', where they are known. */
+function besidePeers(frame: FramePicture): string {
+  const middle = middleOf(frame);
+  if (middle === null || frame.fullCircleMeans !== 'peers') return '';
+  const off = Math.round((middle / frame.fullCircle - 1) * 100);
+  if (Math.abs(off) <= 2) return ', which is as sharp as in other cameras of this model';
+  return `, which is ${Math.abs(off)}${gap}% ${off > 0 ? 'sharper' : 'softer'} than in other cameras of this model`;
 }
 
 /** Frame pixels. Fits between neighbours and, as nearly as it can, between station and edge. */
@@ -163,7 +176,7 @@ function Shares({
             dominantBaseline={above ? undefined : 'hanging'}
             fill={weak ? '#ffc9b0' : undefined}
           >
-            {share === null ? '–' : `${Math.round(share * 100)}\u2009%`}
+            {share === null ? '–' : `${Math.round(share * 100)}${gap}%`}
           </text>
         );
       })}
@@ -181,7 +194,7 @@ function FrameTable({ frame }: { frame: FramePicture }) {
       rows={frame.stations.map((station) => [
         placeName(station.id),
         station.mtf50 === null ? '–' : numberText(station.mtf50, 3),
-        station.mtf50 === null ? '–' : numberText((station.mtf50 / frame.fullCircle) * 100, 0),
+        station.mtf50 === null ? '–' : numberText((station.mtf50 / closedAt(frame)) * 100, 0),
         px(station.red),
         px(station.blue),
       ])}
@@ -193,7 +206,7 @@ function spoken(frame: FramePicture): string {
   const measured = frame.stations.filter((station) => station.mtf50 !== null);
   const shares = measured.map(
     (station) =>
-      `${placeName(station.id).toLowerCase()} ${Math.round(((station.mtf50 ?? 0) / frame.fullCircle) * 100)} %`,
+      `${placeName(station.id).toLowerCase()} ${Math.round(((station.mtf50 ?? 0) / closedAt(frame)) * 100)} %`,
   );
   const longest = Math.max(
     0,

@@ -49,7 +49,7 @@ export const exampleScales: (ScaleData & { text: string; source: string })[] = [
   {
     label: 'Exposure',
     source: 'ISO 12232',
-    text: '−0.68 ± 0.06\u2009EV',
+    text: '−0.68 ± 0.06\u00a0EV',
     unit: 'EV',
     value: -0.68,
     expanded: 0.06,
@@ -61,7 +61,7 @@ export const exampleScales: (ScaleData & { text: string; source: string })[] = [
   {
     label: 'Sharpness, middle',
     source: 'ISO 12233',
-    text: '1720 ± 30\u2009LW/PH',
+    text: '1720 ± 30\u00a0LW/PH',
     unit: 'LW/PH',
     value: 1720,
     expanded: 30,
@@ -73,7 +73,7 @@ export const exampleScales: (ScaleData & { text: string; source: string })[] = [
   {
     label: 'Worst corner to middle',
     source: 'ISO 12233',
-    text: '56 ± 4\u2009%',
+    text: '56 ± 4\u00a0%',
     unit: '%',
     value: 56,
     expanded: 4,
@@ -85,7 +85,7 @@ export const exampleScales: (ScaleData & { text: string; source: string })[] = [
   {
     label: 'Saturation',
     source: 'CIE 15',
-    text: '118 ± 1\u2009%',
+    text: '118 ± 1\u00a0%',
     unit: '%',
     value: 118,
     expanded: 1,

@@ -11,6 +11,11 @@ export function Points({ good, weak }: { good: ReportPoint[]; weak: ReportPoint[
       </Section>
       <Section title={weak.length ? 'Less good, and what to do' : 'Less good'}>
         <PointList points={weak} none="No weakness was found in what was tested." />
+        {weak.length > 0 && weak.length < 3 ? (
+          <p className="mt-4 text-ink-2">
+            Everything else measured lies well within an A’s limits.
+          </p>
+        ) : null}
       </Section>
     </div>
   );

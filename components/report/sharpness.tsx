@@ -17,7 +17,7 @@ export function Sharpness({ content, base }: { content: ReportContent; base: str
       title={frame ? headlineOf(frame) : 'Sharpness'}
       lead={
         frame
-          ? `Each ring is one place in the picture. ${closedMeans(frame)} the hairs show how far red and blue are displaced there.`
+          ? 'Each ring is one place in the picture: the further it closes, the sharper the camera draws there. The hairs show how far red and blue are displaced.'
           : 'The target was not found in enough shots to draw sharpness over the frame.'
       }
     >
@@ -30,12 +30,6 @@ export function Sharpness({ content, base }: { content: ReportContent; base: str
       </div>
     </Section>
   );
-}
-
-function closedMeans(frame: FramePicture): string {
-  return frame.fullCircleMeans === 'peers'
-    ? 'A closed ring is as sharp as other cameras of this model;'
-    : 'A closed ring is as sharp as the middle of this camera’s own picture;';
 }
 
 function headlineOf(frame: FramePicture): string {
@@ -52,7 +46,7 @@ function Crops({ pictures, base }: { pictures: Picture[]; base: string }) {
   if (pictures.length === 0) return null;
   return (
     <div>
-      <div className="flex flex-wrap items-start gap-3">
+      <div className="grid grid-cols-2 items-start gap-3">
         {pictures.map((picture) => (
           <OwnPicture
             key={picture.name}

@@ -15,6 +15,7 @@ import { Panel, PanelHead } from '@/components/ui/panel';
 import type { RunDetail, ShotDetail } from '@/lib/shared/api';
 import {
   colourFinding,
+  edgeFinding,
   exposureFinding,
   type Finding,
   fringeFinding,
@@ -48,11 +49,17 @@ export function RunFindings({
     label: placeName(curve.id).toLowerCase(),
   }));
   const colours = analysis?.plots.colours;
+  const fringes = fringeFinding(readings);
   return (
     <>
       <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1.25fr)_minmax(0,1fr)]">
         <FindingPanel finding={sharpness} otherwise="Sharpness over the frame">
           {frame ? <FrameMap frame={frame} /> : <NoPicture />}
+          {fringes ? (
+            <p className="mt-3 text-pretty text-ink-2">
+              <b className="text-ink">{fringes.title}.</b> {fringes.detail}
+            </p>
+          ) : null}
         </FindingPanel>
         <div className="grid gap-3.5">
           <FindingPanel finding={exposureFinding(readings)} otherwise="Exposure">
@@ -65,7 +72,7 @@ export function RunFindings({
         <FindingPanel finding={colourFinding(readings)} otherwise="Colours">
           {colours?.length ? <AbPlane colours={colourPoints(colours)} /> : <NoPicture />}
         </FindingPanel>
-        <FindingPanel finding={fringeFinding(readings)} otherwise="Edges">
+        <FindingPanel finding={edgeFinding(readings)} otherwise="Edges">
           {curves.length > 0 ? <MtfCurves curves={curves} /> : <NoPicture />}
         </FindingPanel>
         {graded ? null : (

@@ -2,7 +2,7 @@ import type { Capture } from '@/analysis/image';
 import { signedText } from '@/components/pictures/draw';
 import { Panel, PanelHead } from '@/components/ui/panel';
 import { exposureTime } from '@/lib/client/format';
-import { gap } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/numbers';
 
 const programWords: Record<string, string> = {
   manual: 'manual exposure',

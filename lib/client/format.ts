@@ -1,4 +1,4 @@
-import { gap } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/numbers';
 
 const days = new Intl.DateTimeFormat('en-GB', { dateStyle: 'medium', timeZone: 'UTC' });
 

@@ -1,6 +1,6 @@
 import type { Metric } from '@/analysis/result';
 import type { Proposal, RunResult } from './api';
-import { numberText } from './numbers';
+import { decimalsOf, gap, numberText } from './numbers';
 import { placeWords } from './places';
 import type { RuleOutcome } from './report';
 
@@ -19,9 +19,6 @@ export interface Finding {
   detail: string;
   look: boolean;
 }
-
-/** Between a number and its unit. Archivo draws the narrow U+202F with hardly any width, so the plain no-break space. */
-export const gap = '\u00a0';
 
 export function readingsOfShot(metrics: readonly Metric[]): Reading[] {
   return metrics.map((m) => ({
@@ -67,7 +64,8 @@ export function exposureFinding(readings: readonly Reading[]): Finding | null {
   const bias = find(readings, 'exposure.bias');
   if (!bias) return null;
   const words = stopsInWords(bias.value);
-  const number = `${signed(bias.value, 2)} ± ${bias.expanded.toFixed(2)}${gap}EV`;
+  const places = decimalsOf(bias.expanded, 2);
+  const number = `${signed(bias.value, places)} ± ${numberText(bias.expanded, places)}${gap}EV`;
   if (words === '') {
     return { title: 'Exposure is right', detail: `${number} from mid grey.`, look: false };
   }
@@ -138,7 +136,7 @@ export function sharpnessFinding(readings: readonly Reading[]): Finding | null {
   if (corners.length > 1 && worst.mtf50 < lonelyCorner * others) {
     return {
       title: `The ${where} corner is ${percent(loss)} softer`,
-      detail: `than the middle; the other corners lose ${percent(Math.max(0, otherLoss))}.`,
+      detail: `Measured against the middle; the other corners ${otherLoss < 0.02 ? 'lose nothing' : `lose ${percent(otherLoss)}`}.`,
       look: true,
     };
   }
@@ -146,6 +144,24 @@ export function sharpnessFinding(readings: readonly Reading[]): Finding | null {
   return {
     title: `The corners are ${percent(all)} softer, evenly`,
     detail: `${middle} No single corner stands out.`,
+    look: false,
+  };
+}
+
+/** How fine the edges are that the camera draws. */
+export function edgeFinding(readings: readonly Reading[]): Finding | null {
+  const stations = stationSharpness(readings);
+  const centre = stations.find((s) => s.id === 'C');
+  if (!centre) return null;
+  const weakest = stations
+    .filter((s) => cornerIds.includes(s.id))
+    .sort((a, b) => a.mtf50 - b.mtf50)[0];
+  const corner = weakest
+    ? `; in the weakest corner, ${placeWords[weakest.id] ?? weakest.id}, at ${numberText(weakest.mtf50, 3)}`
+    : '';
+  return {
+    title: `Half the contrast is left at ${numberText(centre.mtf50, 2)}${gap}cycles per pixel`,
+    detail: `At ${numberText(centre.mtf50, 3)} in the middle${corner}.`,
     look: false,
   };
 }
@@ -158,7 +174,7 @@ export function colourFinding(readings: readonly Reading[]): Finding | null {
   if (!saturation) return null;
   const hue = find(readings, 'colour.hue');
   const error = find(readings, 'colour.error');
-  const detail = error ? `Mean colour error ${error.value.toFixed(1)}${gap}ΔE00.` : '';
+  const detail = error ? `Mean colour error ${error.value.toFixed(1)}${gap}ΔE.` : '';
   const even = !hue || hue.value <= evenHue;
   const off = Math.round(saturation.value - 100);
   if (Math.abs(off) < 4) {

@@ -1,5 +1,5 @@
-/** Narrow no-break space, between a number and its unit. */
-const thin = '\u202f';
+/** Between a number and its unit. Archivo draws the narrow U+202F with hardly any width, so the plain no-break space. */
+export const gap = '\u00a0';
 const minus = '\u2212';
 
 /** A number with its sign as typeset: −0.68. */
@@ -8,10 +8,15 @@ export function numberText(value: number, decimals: number): string {
   return value < 0 && Number(text) !== 0 ? minus + text : text;
 }
 
-/** As many decimals as the doubt's first figure asks for, so that no digit is shown that nothing stands behind. */
+/**
+ * As many decimals as the doubt's first figure asks for, so that no digit is shown that nothing stands behind.
+ * Where that figure is a 1 the next one is kept too: rounding it away could change the doubt by half (JCGM 100, 7.2.6).
+ */
 export function decimalsOf(expanded: number, most: number): number {
   if (expanded <= 0) return most;
-  return Math.min(most, Math.max(0, -Math.floor(Math.log10(expanded))));
+  const place = Math.floor(Math.log10(expanded));
+  const leading = Math.round(expanded / 10 ** place);
+  return Math.min(most, Math.max(0, leading === 1 ? 1 - place : -place));
 }
 
 const unitWords: Record<string, string> = { '1': '', deg: '°', ΔE00: 'ΔE' };
@@ -19,12 +24,12 @@ const unitWords: Record<string, string> = { '1': '', deg: '°', ΔE00: 'ΔE' };
 /** "−0.68 EV"; no space before a degree sign. */
 export function withUnit(text: string, unit: string): string {
   const word = unitWords[unit] ?? unit;
-  return `${text}${word === '' || word === '°' ? '' : thin}${word}`;
+  return `${text}${word === '' || word === '°' ? '' : gap}${word}`;
 }
 
 const mostPlaces = 4;
 
-/** "−0.68 ± 0.06 EV", to the doubt's first figure. Without a doubt worth four places, a whole number is just that, another has `decimals`. */
+/** "−0.68 ± 0.06 EV", to the figures that the doubt allows. Without a doubt worth four places, a whole number is just that, another has `decimals`. */
 export function withDoubt(value: number, expanded: number, unit: string, decimals = 3): string {
   if (Number(expanded.toFixed(mostPlaces)) === 0) {
     return withUnit(numberText(value, Number.isInteger(value) ? 0 : decimals), unit);

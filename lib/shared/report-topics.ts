@@ -2,7 +2,8 @@
  * The words of a report as data. A topic gathers the rules that tell of one thing; `good` is said when the result lies
  * clearly within A's limits, `low` or `high` when it is worth knowing that it lies to that side of ideal.
  * Places in braces are filled from the rule: {value}, {size} (without sign), {stops}, {compensation}, {percent} away from
- * 100, {corner} (the weakest), {cornerShare} (its share of the middle), {seen} (how visible a fringe is), {peers}.
+ * 100, {corner} (the weakest), {cornerShare} (its share of the middle), {seen} (how visible a fringe is), {noticed} (how
+ * visible a difference in colour is), {peers}.
  */
 export interface Line {
   title: string;
@@ -21,7 +22,7 @@ export const topics = {
     quantities: ['exposure.bias'],
     good: {
       title: 'Exposure is right.',
-      text: 'Automatic exposure comes within {size} EV of mid grey.',
+      text: 'Automatic exposure lies {size} EV from mid grey: no compensation is needed.',
     },
     low: { title: 'Dark exposures.', text: '{stops} under. Set compensation to {compensation}.' },
     high: {
@@ -33,7 +34,7 @@ export const topics = {
     quantities: ['clip.highlights'],
     good: {
       title: 'Bright parts keep their detail.',
-      text: '{value} % of the picture is clipped.',
+      text: 'Of the test picture {value} % came out pure white.',
     },
     high: {
       title: 'Bright parts wash out.',
@@ -42,7 +43,10 @@ export const topics = {
   },
   colour: {
     quantities: ['colour.error'],
-    good: { title: 'Colours are true.', text: '{value} ΔE from the printed colours on average.' },
+    good: {
+      title: 'Colours are true.',
+      text: '{value} ΔE from the printed colours on average: {noticed}.',
+    },
     high: {
       title: 'Colours are off.',
       text: '{value} ΔE from the printed colours on average: plan to correct them afterwards.',
@@ -52,7 +56,7 @@ export const topics = {
     quantities: ['colour.saturation'],
     good: {
       title: 'Colours have the right strength.',
-      text: '{value} % of the printed colours’ strength.',
+      text: '{value} % of the printed colours’ strength: skin and skies look natural.',
     },
     low: {
       title: 'Pale colours.',
@@ -65,7 +69,10 @@ export const topics = {
   },
   white: {
     quantities: ['white.error'],
-    good: { title: 'Whites are white.', text: 'Greys lie {value} ΔC from neutral.' },
+    good: {
+      title: 'Whites are white.',
+      text: 'Greys lie {value} ΔC from neutral: there is no cast to correct.',
+    },
     high: {
       title: 'Colour cast.',
       text: 'Greys lie {value} ΔC from neutral. Set white balance by hand on something white.',
@@ -75,16 +82,19 @@ export const topics = {
     quantities: ['sharpness.mtf50'],
     good: {
       title: 'Sharp in the middle.',
-      text: 'Half contrast at {value} cycles per pixel{peers}.',
+      text: 'Fine detail holds: half the contrast is left at {value} cycles per pixel{peers}.',
     },
     low: {
       title: 'Soft in the middle.',
-      text: 'Half contrast at only {value} cycles per pixel: fine for small prints and screens.',
+      text: 'Half the contrast is left at only {value} cycles per pixel: fine for small prints and screens.',
     },
   },
   corners: {
     quantities: ['sharpness.cornerRatio'],
-    good: { title: 'Sharp into the corners.', text: 'They keep {value} % of the middle{peers}.' },
+    good: {
+      title: 'Sharp into the corners.',
+      text: 'They keep {value} % of the middle{peers}: place the subject where you like.',
+    },
     low: {
       title: 'Soft corners.',
       text: 'They keep {value} % of the middle. Close the aperture, or keep the subject away from them.',
@@ -92,7 +102,10 @@ export const topics = {
   },
   evenness: {
     quantities: ['sharpness.asymmetry'],
-    good: { title: 'The lens sits true.', text: 'Its four corners differ by {value} %.' },
+    good: {
+      title: 'The lens sits true.',
+      text: 'Its four corners differ by {value} %: no side is blurred.',
+    },
     high: {
       title: '{corner} corner soft.',
       text: '{cornerShare} % of the middle. Compose with the subject away from it, or close the aperture.',
@@ -102,7 +115,7 @@ export const topics = {
     quantities: ['fringe.red', 'fringe.blue'],
     good: {
       title: 'Hardly any colour fringes.',
-      text: 'At most {size} pixels in the corners{peers}.',
+      text: 'At most {size} pixels in the corners{peers}: {seen}.',
     },
     low: {
       title: 'Colour fringes towards the edges.',
@@ -115,7 +128,10 @@ export const topics = {
   },
   shift: {
     quantities: ['fringe.shift'],
-    good: { title: 'The colours meet.', text: 'Red and blue lie within {value} pixels of green.' },
+    good: {
+      title: 'The colours meet.',
+      text: 'Red and blue lie {value} pixels from green: edges stay clean.',
+    },
     high: {
       title: 'The colours don’t quite meet.',
       text: 'Red or blue lies {value} pixels aside over the whole frame, as after a knock to the lens.',
@@ -123,7 +139,10 @@ export const topics = {
   },
   noise: {
     quantities: ['noise.snr'],
-    good: { title: 'Clean pictures.', text: '{value} dB in mid grey{peers}.' },
+    good: {
+      title: 'Clean pictures.',
+      text: 'Skies and skin stay smooth: {value} dB in mid grey{peers}.',
+    },
     low: {
       title: 'Grainy pictures.',
       text: '{value} dB in mid grey. Use the lowest sensitivity and plenty of light.',
@@ -133,7 +152,7 @@ export const topics = {
     quantities: ['shading.corner'],
     good: {
       title: 'Light reaches the corners.',
-      text: 'They differ from the middle by {size} EV.',
+      text: 'They differ from the middle by {size} EV: plain skies look even.',
     },
     low: {
       title: 'Dark corners.',
@@ -143,7 +162,10 @@ export const topics = {
   },
   lightEvenness: {
     quantities: ['shading.asymmetry'],
-    good: { title: 'Evenly lit.', text: 'The four corners differ by {value} EV.' },
+    good: {
+      title: 'Evenly lit.',
+      text: 'The four corners differ by {value} EV: no side comes out darker.',
+    },
     high: {
       title: 'Unevenly lit.',
       text: 'The four corners differ by {value} EV: one side comes out darker.',
@@ -153,7 +175,7 @@ export const topics = {
     quantities: ['distortion.corner'],
     good: {
       title: 'Straight lines stay straight.',
-      text: 'The corners are {size} % out of place.',
+      text: 'The corners are {size} % out of place: walls and horizons look straight.',
     },
     low: {
       title: 'Lines bow outward.',
@@ -167,6 +189,34 @@ export const topics = {
 } as const satisfies Record<string, TopicWords>;
 
 export type TopicId = keyof typeof topics;
+
+/** What a buyer asks first stands first among the good things. */
+export const goodFirst: readonly TopicId[] = [
+  'sharpness',
+  'corners',
+  'exposure',
+  'colour',
+  'noise',
+  'fringes',
+  'evenness',
+  'white',
+  'saturation',
+  'highlights',
+  'light',
+  'geometry',
+  'lightEvenness',
+  'shift',
+];
+
+/** A good thing isn't said beside a weakness that a reader would take for its opposite. */
+export const unsaidBeside: Partial<Record<TopicId, readonly TopicId[]>> = {
+  corners: ['evenness', 'sharpness'],
+  saturation: ['colour'],
+  colour: ['saturation', 'white'],
+  white: ['colour'],
+  light: ['lightEvenness'],
+  lightEvenness: ['light'],
+};
 
 /** The first whose conditions hold is the report's headline. */
 export const headlines: readonly { letter?: 'Parts'; weak?: readonly TopicId[]; text: string }[] = [

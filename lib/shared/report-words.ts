@@ -2,16 +2,18 @@ import { quantities } from '@/analysis/quantities';
 import { stopsInWords } from './findings';
 import { listOf } from './grading/propose';
 import { standingOf } from './grading/standing';
-import { decimalsOf, numberText } from './numbers';
+import { decimalsOf, gap, numberText } from './numbers';
 import { placeWords } from './places';
 import type { ReportContent, ReportPoint, RuleOutcome } from './report';
 import {
+  goodFirst,
   headlines,
   type Line,
   openings,
   type TopicId,
   type TopicWords,
   topics,
+  unsaidBeside,
 } from './report-topics';
 import type { Letter, Standing } from './words';
 
@@ -51,9 +53,11 @@ export function reportWords(facts: WordFacts): ReportWords {
   const weak = told
     .filter((one) => one.standing !== 'within' || one.room < near)
     .slice(0, mostPoints);
+  const weakIds = new Set(weak.map(({ id }) => id));
   const good = told
-    .filter((one) => one.standing === 'within' && !weak.includes(one))
-    .toReversed()
+    .filter((one) => one.standing === 'within' && !weakIds.has(one.id))
+    .filter(({ id }) => !unsaidBeside[id]?.some((other) => weakIds.has(other)))
+    .toSorted((a, b) => goodFirst.indexOf(a.id) - goodFirst.indexOf(b.id))
     .slice(0, mostPoints);
   return {
     headline: headlineOf(facts.letter, told),
@@ -131,14 +135,15 @@ function placesOf({ rule, value }: Told, { weakest }: WordFacts): Record<string,
   const size = Math.abs(value);
   const corner = weakest ? (placeWords[weakest.station] ?? 'one') : 'one';
   return {
-    value: numberText(value, decimals),
-    size: numberText(size, decimals),
+    value: orLess(value, decimals),
+    size: orLess(size, decimals),
     stops: stopsInWords(value) || `${numberText(size, 2)} EV`,
     compensation: compensation(value),
     percent: numberText(Math.abs(value - 100), 0),
     corner: corner.charAt(0).toUpperCase() + corner.slice(1),
     cornerShare: weakest ? numberText(weakest.share * 100, 0) : '–',
     seen: seen(size),
+    noticed: noticed(size),
     peers: against(rule, value),
   };
 }
@@ -147,6 +152,18 @@ function placesOf({ rule, value }: Told, { weakest }: WordFacts): Record<string,
 function compensation(bias: number): string {
   const ev = Math.round(-bias * 3) / 3;
   return `${ev > 0 ? '+' : ''}${numberText(ev, 1)}`;
+}
+
+/** "less than 0.01" where the digits shown would all be noughts. */
+function orLess(value: number, decimals: number): string {
+  const text = numberText(value, decimals);
+  return Number(text) === 0 ? `less than ${numberText(10 ** -decimals, decimals)}` : text;
+}
+
+/** A mean colour difference in words (common practice, no source). */
+function noticed(deltaE: number): string {
+  if (deltaE < 2) return 'hardly to be seen';
+  return deltaE < 4 ? 'seen only side by side' : 'seen at a second look';
 }
 
 /** Pixels of a fringe in words (common practice, no source). */
@@ -165,8 +182,11 @@ function against(rule: RuleOutcome, value: number): string {
   return beaten.length > rule.peers.length / 2 ? ', better than most others of this model' : '';
 }
 
+/** Puts the places in; a number stays on one line with its unit. */
 const fill = (template: string, places: Record<string, string>) =>
-  template.replace(/\{(\w+)\}/g, (_, name: string) => places[name] ?? '');
+  template
+    .replace(/\{(\w+)\}/g, (_, name: string) => places[name] ?? '')
+    .replace(/(\d) (?=%|EV|dB|ΔE|ΔC|cycles|pixels)/g, `$1${gap}`);
 
 function headlineOf(letter: Letter, told: readonly Told[]): string {
   const weak = new Set(told.filter((one) => one.standing !== 'within').map((one) => one.id));

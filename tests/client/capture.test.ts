@@ -1,7 +1,7 @@
 import { expect, test } from 'vitest';
 import type { Capture } from '@/analysis/image';
 import { settingsOf } from '@/components/shots/capture-panel';
-import { gap } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/numbers';
 
 const nothing: Capture = {
   make: null,

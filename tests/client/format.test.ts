@@ -9,7 +9,7 @@ import {
   money,
   parseMoney,
 } from '@/lib/client/format';
-import { gap } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/numbers';
 
 // Source: ISO 4217, minor units: EUR 2, JPY 0.
 test.each([

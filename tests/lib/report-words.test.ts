@@ -2,7 +2,14 @@ import { describe, expect, test } from 'vitest';
 import type { Evidence } from '@/lib/shared/grading/evidence';
 import { propose } from '@/lib/shared/grading/propose';
 import { defaultSchemes } from '@/lib/shared/grading/schemes';
-import { headlines, type TopicId, type TopicWords, topics } from '@/lib/shared/report-topics';
+import {
+  goodFirst,
+  headlines,
+  type TopicId,
+  type TopicWords,
+  topics,
+  unsaidBeside,
+} from '@/lib/shared/report-topics';
 import { reportWords, type WordFacts } from '@/lib/shared/report-words';
 import { functionCheckItems } from '@/lib/shared/words';
 
@@ -94,7 +101,7 @@ test('a corner that is softer than the others is named, with its share of the mi
   expect(weak[0]).toEqual({
     standing: 'outside',
     title: 'Lower right corner soft.',
-    text: '58 % of the middle. Compose with the subject away from it, or close the aperture.',
+    text: '58\u00a0% of the middle. Compose with the subject away from it, or close the aperture.',
   });
 });
 
@@ -152,8 +159,9 @@ describe('every topic', () => {
   });
 
   test.each(Object.keys(topics) as TopicId[])('%s is said as good when it is the best', (id) => {
-    // Everything else in its weakest: only this topic lies within A.
-    const bad = Object.assign({}, ...sides.filter(([other]) => other !== id).map(([, , v]) => v));
+    // Everything else in its weakest, but for what would silence it.
+    const others = sides.filter(([other]) => other !== id && !unsaidBeside[id]?.includes(other));
+    const bad = Object.assign({}, ...others.map(([, , v]) => v));
     const { good } = wordsOf(bad);
     expect(good.map((point) => point.title)).toContain(topics[id].good.title);
     for (const point of good) expect(point.text).not.toMatch(/[{}]|undefined|NaN/);
@@ -201,9 +209,10 @@ test('peers are mentioned only when there are three and this camera beats most o
     wordsOf(Object.assign({}, ...sides.filter(([id]) => id !== 'noise').map(([, , v]) => v)), {
       peers,
     }).good.find((point) => point.title === 'Clean pictures.')?.text;
-  expect(noise([31, 33, 35])).toBe('40.0 dB in mid grey, better than most others of this model.');
-  expect(noise([31, 33])).toBe('40.0 dB in mid grey.');
-  expect(noise([41, 43, 35])).toBe('40.0 dB in mid grey.');
+  const plain = 'Skies and skin stay smooth: 40.0\u00a0dB in mid grey';
+  expect(noise([31, 33, 35])).toBe(`${plain}, better than most others of this model.`);
+  expect(noise([31, 33])).toBe(`${plain}.`);
+  expect(noise([41, 43, 35])).toBe(`${plain}.`);
 });
 
 test.each([
@@ -216,6 +225,20 @@ test.each([
   // Half a pixel is within A with room to spare, so it isn't told as weak at all.
   if (pixels === 0.5) expect(told).toBeUndefined();
   else expect(told?.text).toContain(words);
+});
+
+test('a soft corner is never called sharp in the same breath, and nothing is nought', () => {
+  const { good } = wordsOf({ 'sharpness.asymmetry': 50, 'exposure.bias': 0 });
+  expect(good.map((point) => point.title)).toEqual([
+    'Sharp in the middle.',
+    'Exposure is right.',
+    'Colours are true.',
+  ]);
+  expect(good[1]?.text).toContain(`less than 0.01\u00a0EV`);
+});
+
+test('every topic has its rank among the good', () => {
+  expect(goodFirst.toSorted()).toEqual(Object.keys(topics).toSorted());
 });
 
 test('no more than three weak points, the worst first', () => {

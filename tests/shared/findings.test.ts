@@ -2,10 +2,10 @@ import { describe, expect, test } from 'vitest';
 import {
   colourFinding,
   doubtSentence,
+  edgeFinding,
   exposureFinding,
   findings,
   fringeFinding,
-  gap,
   gradeFinding,
   type Reading,
   sharpnessFinding,
@@ -14,6 +14,7 @@ import {
   stopsInWords,
   whiteFinding,
 } from '@/lib/shared/findings';
+import { gap } from '@/lib/shared/numbers';
 import type { RuleOutcome } from '@/lib/shared/report';
 
 const reading = (name: string, value: number, zone: string | null = null): Reading => ({
@@ -79,6 +80,17 @@ describe('sharpness', () => {
     expect(sharpnessFinding(corners(0.2, 0.3, 0.3, 0.29, 0.3))?.title).toBe(
       'The middle is softer than the corners',
     );
+  });
+  test('a lone soft corner leaves the others their due', () => {
+    expect(sharpnessFinding(corners(0.3, 0.3, 0.3, 0.3, 0.15))?.detail).toContain('lose nothing');
+  });
+  test('edges are told by where half the contrast is left, in the middle and in the weakest corner', () => {
+    const finding = edgeFinding(corners(0.3, 0.25, 0.26, 0.25, 0.174));
+    expect(finding?.title).toBe(`Half the contrast is left at 0.30${gap}cycles per pixel`);
+    expect(finding?.detail).toBe(
+      'At 0.300 in the middle; in the weakest corner, lower right, at 0.174.',
+    );
+    expect(edgeFinding([reading('sharpness.mtf50', 0.2, 'NW')])).toBeNull();
   });
   // Truth: √(0.1 · 0.4) = 0.2.
   test('a station takes the geometric mean of its edges', () => {

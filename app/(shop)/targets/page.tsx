@@ -51,7 +51,7 @@ function PaperTable({ shape }: { shape: '4x3' | '3x2' }) {
           </th>
           {focalLengths.map((focal) => (
             <th key={focal} scope="col" className="py-1.5 font-[560]">
-              {focal}&#x2009;mm
+              {focal}&nbsp;mm
             </th>
           ))}
           <th scope="col">
@@ -68,7 +68,7 @@ function PaperTable({ shape }: { shape: '4x3' | '3x2' }) {
             {focalLengths.map((focal) => (
               <td key={focal}>
                 {distanceMetres(target, target.print[paper]?.mmPerUnit ?? 0, focal).toFixed(2)}
-                &#x2009;m
+                &nbsp;m
               </td>
             ))}
             <td className="text-right">
