@@ -36,11 +36,11 @@ export function measureFrame(frame: Frame): FrameLight {
     clippedHighlights: (100 * clipped.highlights) / pixels,
     clippedShadows: (100 * clipped.shadows) / pixels,
     pixels,
-    histogram: coarsen(luminance, count, (bin) => toCode((bin + 0.5) / fine)),
+    histogram: coarsenLight(luminance, count),
     histogramByChannel: {
-      red: coarsen(channels[0], count, (code) => code / frame.maxCode),
-      green: coarsen(channels[1], count, (code) => code / frame.maxCode),
-      blue: coarsen(channels[2], count, (code) => code / frame.maxCode),
+      red: coarsen(channels[0], count),
+      green: coarsen(channels[1], count),
+      blue: coarsen(channels[2], count),
     },
   };
 }
@@ -59,28 +59,30 @@ function countClipped(frame: Frame): Clipped {
 }
 
 /**
- * Four pixels at a time: in a word w with bytes below 256, adding 2 to the low seven bits of each byte sets its top bit
- * just when they are 126 or 127, so the test marks bytes of 254 and 255; on the complement it marks 0 and 1.
+ * Four pixels at a time, in three words. A byte is 0, 1, 254 or 255 just when its top seven bits are alike, that is when bits 1 to 6
+ * of it and of itself shifted by one differ nowhere. `spread` sets the top bit of every byte in which they do.
  */
 function countClippedBytes(data: Uint8Array): Clipped {
-  const words = new Uint32Array(data.buffer, data.byteOffset, data.length >> 2);
-  const blocks = Math.floor(words.length / 3);
+  const words = new Int32Array(data.buffer, data.byteOffset, data.length >> 2);
+  const end = words.length - 2;
   const total: Clipped = { highlights: 0, shadows: 0 };
-  for (let block = 0; block < blocks; block++) {
-    const a = words[block * 3]!;
-    const b = words[block * 3 + 1]!;
-    const c = words[block * 3 + 2]!;
-    const top = (carry(a) & a) | (carry(b) & b) | (carry(c) & c);
-    const bottom = (carry(~a) & ~a) | (carry(~b) & ~b) | (carry(~c) & ~c);
-    if (((top | bottom) & 0x80808080) === 0) continue;
-    addClipped(total, data, block * 12, block * 12 + 12, 255);
+  let word = 0;
+  for (; word < end; word += 3) {
+    const a = words[word]!;
+    const b = words[word + 1]!;
+    const c = words[word + 2]!;
+    if ((spread(a) & spread(b) & spread(c) & 0x80808080) === topBits) continue;
+    addClipped(total, data, 4 * word, 4 * word + 12, 255);
   }
-  addClipped(total, data, blocks * 12, data.length, 255);
+  addClipped(total, data, 4 * word, data.length, 255);
   return total;
 }
 
-function carry(word: number): number {
-  return (word & 0x7f7f7f7f) + 0x02020202;
+const topBits = 0x80808080 | 0;
+
+/** No sum passes its byte: at most 0x7e + 0x7e. */
+function spread(word: number): number {
+  return (((word ^ (word >>> 1)) & 0x7e7e7e7e) + 0x7e7e7e7e) | 0;
 }
 
 function addClipped(
@@ -116,31 +118,32 @@ function sampleHistograms(frame: Frame): Histograms {
   const weigh = (i: number) =>
     frame.toLinear[i]!.map((linear) => linear * weights[i]! * (fine - 1));
   const [redLight, greenLight, blueLight] = [weigh(0), weigh(1), weigh(2)];
-  const step = 3 * sampleStride(width, width * height);
+  const { rowStep, colStep } = sampleSteps(width, height);
+  const last = fine - 1;
   let count = 0;
-  for (let i = 0; i < data.length; i += step) {
-    const r = data[i]!;
-    const g = data[i + 1]!;
-    const b = data[i + 2]!;
-    red[r]!++;
-    green[g]!++;
-    blue[b]!++;
-    const bin = (redLight[r]! + greenLight[g]! + blueLight[b]!) | 0;
-    luminance[bin < 0 ? 0 : bin < fine ? bin : fine - 1]!++;
-    count++;
+  for (let row = rowStep >> 1, n = 0; row < height; row += rowStep, n++) {
+    const end = (row + 1) * width * 3;
+    // Each row begins elsewhere, so that the sample doesn't stand in columns.
+    for (let i = (row * width + (n % colStep)) * 3; i < end; i += 3 * colStep) {
+      const r = data[i]!;
+      const g = data[i + 1]!;
+      const b = data[i + 2]!;
+      red[r]!++;
+      green[g]!++;
+      blue[b]!++;
+      const bin = (redLight[r]! + greenLight[g]! + blueLight[b]!) | 0;
+      luminance[bin < 0 ? 0 : Math.min(bin, last)]!++;
+      count++;
+    }
   }
   return { luminance, channels: [red, green, blue], count };
 }
 
-/** A stride that shares no factor with the width, so that the sample doesn't stand in columns. */
-function sampleStride(width: number, pixels: number): number {
-  let stride = Math.max(1, Math.floor(pixels / enoughPixels));
-  while (divisor(stride, width) > 1) stride++;
-  return stride;
-}
-
-function divisor(a: number, b: number): number {
-  return b === 0 ? a : divisor(b, a % b);
+/** Whole rows are left out where they can be: what makes a sample of a large frame slow is to fetch its rows. */
+function sampleSteps(width: number, height: number): { rowStep: number; colStep: number } {
+  const stride = Math.max(1, Math.floor((width * height) / enoughPixels));
+  const rowStep = Math.ceil(Math.sqrt(stride));
+  return { rowStep, colStep: Math.max(1, Math.floor(stride / rowStep)) };
 }
 
 function medianOf(luminance: Uint32Array, count: number): { median: number; uncertainty: number } {
@@ -160,10 +163,22 @@ function medianOf(luminance: Uint32Array, count: number): { median: number; unce
   return { median: quantile(0.5), uncertainty: Math.max(uncertainty, 0.5 / fine) };
 }
 
-function coarsen(counts: Uint32Array, total: number, code: (index: number) => number): number[] {
+function coarsen(counts: Uint32Array, total: number): number[] {
   const shares = new Array<number>(bins).fill(0);
-  counts.forEach((n, index) => {
-    if (n > 0) shares[Math.min(bins - 1, Math.floor(code(index) * bins))]! += n / total;
-  });
+  const scale = bins / (counts.length - 1);
+  for (let code = 0; code < counts.length; code++) {
+    shares[Math.min(bins - 1, Math.floor(code * scale))]! += counts[code]! / total;
+  }
   return shares;
 }
+
+/** Bins even in codes, from light's: where each ends is found once, as the way from light to code is slow. */
+function coarsenLight(counts: Uint32Array, total: number): number[] {
+  const shares = new Array<number>(bins).fill(0);
+  for (let i = 0; i < fine; i++) shares[coarseBin[i]!]! += counts[i]! / total;
+  return shares;
+}
+
+const coarseBin = Uint8Array.from({ length: fine }, (_, i) =>
+  Math.min(bins - 1, Math.floor(toCode((i + 0.5) / fine) * bins)),
+);
