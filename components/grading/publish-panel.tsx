@@ -19,13 +19,15 @@ export function PublishPanel({ unit }: { unit: UnitDetail }) {
     () => call<ReportRow>(`/api/units/${unit.tag}/report`, 'POST', {}),
     ['unit', 'units', 'reports'],
   );
-  const go = () =>
+  const go = () => {
+    if (publish.isPending) return;
     publish.mutate(undefined, {
       onSuccess: () => {
         say('The report is published.');
         router.refresh();
       },
     });
+  };
   useShortcuts(unit.may.publish ? [{ key: 'p', label: 'Publish the report', run: go }] : []);
   const { gradeSigned: grade, report } = unit;
   return (

@@ -34,6 +34,7 @@ export function NextStepPanel({ unit, onNewRun }: { unit: UnitDetail; onNewRun: 
   const go = (to: UnitState, note?: string) =>
     move.mutate({ to, note }, { onSuccess: () => news(`${unit.tag}: ${unitStateWords[to]}.`) });
   const act = () => {
+    if (move.isPending || publish.isPending) return;
     if (step.do === 'move') go(step.to);
     if (step.do === 'open') router.push(step.href);
     if (step.do === 'run') onNewRun();
