@@ -28,7 +28,7 @@ export function InvitationForm({ token, hasAccount }: { token: string; hasAccoun
     }
   });
   return (
-    <form onSubmit={submit} noValidate className="grid gap-4">
+    <form method="post" onSubmit={submit} noValidate className="grid gap-4">
       <Input
         label="Your name"
         autoComplete="name"

@@ -23,7 +23,7 @@ export function NewPasswordForm({ token }: { token: string }) {
     }
   });
   return (
-    <form onSubmit={submit} noValidate className="grid gap-4">
+    <form method="post" onSubmit={submit} noValidate className="grid gap-4">
       <Input
         label="New password"
         hint="At least 10 characters. Signs you out everywhere else."

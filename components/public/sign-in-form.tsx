@@ -27,7 +27,7 @@ export function SignInForm({ next }: { next: string }) {
     setError('root', { message: answer?.error ?? away });
   });
   return (
-    <form onSubmit={submit} noValidate className="grid gap-4">
+    <form method="post" onSubmit={submit} noValidate className="grid gap-4">
       <Input
         label="E-mail address"
         type="email"
