@@ -144,7 +144,7 @@ function solve(rows: readonly Row[], frames: number, basis: Basis): Solution | n
     all,
     all.map(() => 1),
     0,
-    1e4,
+    1e8,
   );
   const inverse = invertMatrix(normal, n);
   if (!inverse) return null;

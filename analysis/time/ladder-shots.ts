@@ -69,6 +69,14 @@ export function leftOut(name: string, zone: string | undefined, reason: string):
   };
 }
 
+/** % of the frame at the top of the scale beyond which a frame without a readable target counts as clipped. Our choice. */
+export const muchClipping = 20;
+export const overExposed = 'it is over-exposed up to clipping';
+
+export function clippedRung(name: string, zone: string, reason: string): Warning {
+  return { ...leftOut(name, zone, reason), code: 'ladder-rung-clipped' };
+}
+
 const speedVaries: Warning = {
   code: 'ladder-iso-varies',
   message:

@@ -1,7 +1,15 @@
 import type { GroupResult, Metric, Warning } from '../result.ts';
 import { median } from '../statistics/outliers.ts';
 import { fitExposures, type GreyPoint } from './fit-exposures.ts';
-import { type LadderShot, leftOut, type PlacedShot, placeShots } from './ladder-shots.ts';
+import {
+  clippedRung,
+  type LadderShot,
+  leftOut,
+  muchClipping,
+  overExposed,
+  type PlacedShot,
+  placeShots,
+} from './ladder-shots.ts';
 import { compareReciprocals } from './reciprocal.ts';
 
 /** Lightest luminance, linear, that is compared: over it the curve's shoulder makes little of a lot of light. Our choice. */
@@ -30,8 +38,14 @@ export function measureLadder(shots: readonly LadderShot[]): GroupResult {
   const { placed, warnings } = placeShots(shots);
   const seen = placed.filter(({ greys }) => greys !== null);
   if (seen.length === 0) return compareReciprocals(placed, warnings);
-  for (const { name, zone, greys } of placed)
-    if (greys === null) warnings.push(leftOut(name, zone, 'no target was found in it'));
+  for (const { name, zone, greys, clippedHighlights } of placed) {
+    if (greys !== null) continue;
+    warnings.push(
+      clippedHighlights > muchClipping
+        ? clippedRung(name, zone, overExposed)
+        : leftOut(name, zone, 'no target was found in it'),
+    );
+  }
   const usable = withoutClipped(seen, warnings);
   const chained = withoutApart(usable, warnings);
   const fit = chained.length > 1 ? fitExposures(chained.map(({ greys }) => greys)) : null;
@@ -53,19 +67,16 @@ function withoutClipped(shots: readonly PlacedShot[], warnings: Warning[]): Seen
     const top = Math.max(0, ...greys.map(({ light }) => light));
     const used = greys.filter(({ luminance }) => luminance > darkest && luminance < lightest);
     if (top < background) {
-      warnings.push({
-        ...leftOut(shot.name, shot.zone, 'it is over-exposed up to clipping'),
-        code: 'ladder-rung-clipped',
-      });
+      warnings.push(clippedRung(shot.name, shot.zone, overExposed));
       return [];
     }
     if (used.length < fewestGreys) {
       const dark = greys.filter(({ luminance }) => luminance <= darkest).length > greys.length / 2;
-      const reason = dark ? 'it is too dark to tell the greys apart' : 'too few greys can be used';
-      warnings.push({
-        ...leftOut(shot.name, shot.zone, reason),
-        code: dark ? 'ladder-rung-clipped' : 'ladder-rung-left-out',
-      });
+      warnings.push(
+        dark
+          ? clippedRung(shot.name, shot.zone, 'it is too dark to tell the greys apart')
+          : leftOut(shot.name, shot.zone, 'too few greys can be used'),
+      );
       return [];
     }
     return [{ ...shot, greys: used }];

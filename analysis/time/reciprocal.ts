@@ -1,6 +1,12 @@
 import type { GroupResult, Metric, Warning } from '../result.ts';
 import { median } from '../statistics/outliers.ts';
-import { leftOut, type PlacedShot } from './ladder-shots.ts';
+import {
+  clippedRung,
+  leftOut,
+  muchClipping,
+  overExposed,
+  type PlacedShot,
+} from './ladder-shots.ts';
 
 /** Nominal exposures this close count as equal, EV. */
 const equal = 0.02;
@@ -8,7 +14,6 @@ const equal = 0.02;
 const contrastDoubt = 0.25;
 /** Differences beyond this are no longer small, EV. */
 const smallDifference = 0.5;
-const muchClipping = 20;
 
 /**
  * A ladder without greys. Without a tone response no step can be told; but settings that should give equal light (t · k with N · √k)
@@ -23,10 +28,7 @@ export function compareReciprocals(
   const metrics: Metric[] = [];
   const open = shots.filter((shot) => {
     const clipped = shot.median === null || shot.clippedHighlights > muchClipping;
-    if (clipped) {
-      const reason = 'it is over-exposed up to clipping';
-      warnings.push({ ...leftOut(shot.name, shot.zone, reason), code: 'ladder-rung-clipped' });
-    }
+    if (clipped) warnings.push(clippedRung(shot.name, shot.zone, overExposed));
     return !clipped;
   });
   const waiting = new Set(open);
