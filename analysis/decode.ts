@@ -1,6 +1,7 @@
 import exifr from 'exifr';
 import sharp, { type Metadata, type Sharp } from 'sharp';
 import { type ExifTags, readCapture, readColourSpace } from './capture.ts';
+import { warnOfFile } from './doubt/doubt-file.ts';
 import { MeasurementError } from './errors.ts';
 import { adobeRgbSpace, type ColourSpace, readProfile, srgbSpace } from './icc.ts';
 import type { Capture, Frame } from './image.ts';
@@ -49,6 +50,7 @@ export async function decode(bytes: Uint8Array): Promise<Decoded> {
   }
   const pixels = await readPixels(bytes, maxCode, colour.convert);
   const blockStep = format === 'jpeg' ? readBlockStep(bytes) : null;
+  warnings.push(...warnOfFile(tags, metadata, blockStep));
   return {
     frame: {
       ...pixels,
