@@ -69,5 +69,6 @@ export function inverseOf(map: LensMap): Float64Array {
 }
 
 export function halfDiagonal(frame: { readonly width: number; readonly height: number }): number {
-  return Math.hypot(frame.width, frame.height) / 2;
+  // Math.hypot is many times slower than a square root, and this is asked for every point.
+  return Math.sqrt(frame.width * frame.width + frame.height * frame.height) / 2;
 }

@@ -46,7 +46,7 @@ function rank(pose: Pose): number {
 }
 
 /** So good that no other match can be better: the wrong shape, stretched to fit, misses by 1.7 units and more, the right one by 0.3. */
-function isCertain(pose: Pose): boolean {
+export function isCertain(pose: Pose): boolean {
   return pose.stationCount >= 9 && pose.discAgreement > 0.9 && pose.misfit < 0.8;
 }
 

@@ -16,18 +16,19 @@ const padRadius = 62;
 const bestDeviation = squareSide / Math.sqrt(2 * Math.PI);
 // Widths of the double box blurs, for the plane and for the plane halved: marks from 0.07 to 0.5 pixels a unit, which holds the target
 // from a third of the frame's height to half as large again as the frame.
-const blurWidths = [
-  [5, 7, 11],
-  [5, 7, 11, 17],
-];
+const fullWidths = [5, 7, 11];
+const halvedWidths = [5, 7, 11, 17];
 const leastAnswer = 0.03; // of the local mean; a station gives 0.08 and more, sensor noise less than 0.01
 const mostPeaks = 500;
 const rayCount = 32;
 
-/** Stations in a plane of codes, at any scale and rotation; also some other things, which the pattern of all of them weeds out. */
-export function findStations(plane: Plane): StationCandidate[] {
+/**
+ * Stations in a plane of codes, at any rotation; also some other things, which the pattern of all of them weeds out.
+ * @param size large: only those that a target filling half of the frame's height or more has, in a quarter of the time; all: any
+ */
+export function findStations(plane: Plane, size: 'large' | 'all'): StationCandidate[] {
   const candidates: StationCandidate[] = [];
-  for (const peak of findPeaks(plane)) {
+  for (const peak of findPeaks(plane, size)) {
     if (candidates.some((found) => liesIn(peak, found))) continue;
     const found = measureSquare(plane, peak, peak.deviation / bestDeviation);
     if (found && !candidates.some((other) => areSame(found, other))) candidates.push(found);
@@ -57,15 +58,10 @@ interface Peak extends Point {
 }
 
 /** Dark blobs in something lighter: maxima of the difference of two blurs, strongest first. */
-function findPeaks(plane: Plane): Peak[] {
+function findPeaks(plane: Plane, size: 'large' | 'all'): Peak[] {
   const peaks: Peak[] = [];
-  let octave = plane;
-  let pixel = 1;
-  for (const widths of blurWidths) {
-    collectPeaks(octave, widths, pixel, peaks);
-    octave = halve(octave);
-    pixel *= 2;
-  }
+  if (size === 'all') collectPeaks(plane, fullWidths, 1, peaks);
+  collectPeaks(halve(plane), halvedWidths, 2, peaks);
   const rimmed = peaks.filter((peak) => hasLighterRim(plane, peak));
   return rimmed.sort((p, q) => q.answer - p.answer).slice(0, mostPeaks);
 }

@@ -50,7 +50,8 @@ function symmetryCentre(
     if (!step) return null;
     centre = { x: centre.x + step.x, y: centre.y + step.y };
     if (Math.hypot(centre.x - start.x, centre.y - start.y) > reach / 4) return null;
-    if (Math.hypot(step.x, step.y) < 1e-4) break;
+    // The steps shrink by a factor of ten and more each, so that the next one would be a few thousandths of a pixel.
+    if (Math.hypot(step.x, step.y) < 5e-3) break;
   }
   return planeToImage(map, centre.x, centre.y);
 }

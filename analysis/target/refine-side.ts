@@ -25,6 +25,8 @@ const leastLines = 6;
 // (pad − square) / (pad + square) in linear light is 0.6 as printed; flare and a flat tone curve may halve it.
 const leastContrast = 0.2;
 const mostSamples = 48;
+// The passes before the last only bring the profile near: so many lines are enough for that.
+const nearingLines = 24;
 
 /** How much reading a side is worth. */
 export interface Effort {
@@ -56,7 +58,8 @@ export function refineSide(
   let reach = widest;
   let shift: SideShift = { offset: 0, slope: 0 };
   for (let pass = 0; pass < passes; pass++) {
-    const fit = fitPass(frame, map, side, shift, { lines, reach, unitsPerPixel });
+    const read = pass < passes - 1 ? Math.min(lines, nearingLines) : lines;
+    const fit = fitPass(frame, map, side, shift, { lines: read, reach, unitsPerPixel });
     if (!fit) return null;
     shift = { offset: shift.offset + fit.offset, slope: shift.slope + fit.slope };
     // 2.2 σ to either side hold 97 % of a Gaussian blur; what is cut off is cut off alike on both.
@@ -193,7 +196,7 @@ export function imageNormal(
   const determinant = a * d - b * c;
   const x = (d * normal.x - c * normal.y) / determinant;
   const y = (-b * normal.x + a * normal.y) / determinant;
-  const length = Math.hypot(x, y);
+  const length = Math.sqrt(x * x + y * y);
   return { x: x / length, y: y / length, unitsPerPixel: length };
 }
 

@@ -12,7 +12,7 @@ import {
 import { polygonAreaInFrame } from '../geometry/polygon.ts';
 import { radialFactor } from '../geometry/radial.ts';
 import type { Frame, Point } from '../image.ts';
-import { findPose, leastAgreement, type Pose } from './find-pose.ts';
+import { findPose, isCertain, leastAgreement, type Pose } from './find-pose.ts';
 import { findStations } from './find-stations.ts';
 import { reduceGreen } from './reduce.ts';
 import { type RefinedStation, refineCorners } from './refine-corners.ts';
@@ -41,8 +41,12 @@ export function registerTarget(frame: Frame, options: RegisterOptions = {}): Reg
   const { target = 'auto' } = options;
   const shapes = target === 'auto' ? Object.values(targets) : [targets[target]];
   const plane = reduceGreen(frame, reducedSide);
-  const candidates = findStations(plane);
-  const pose = findPose(plane, candidates, shapes);
+  let candidates = findStations(plane, 'large');
+  let pose = findPose(plane, candidates, shapes);
+  if (!pose || !isCertain(pose)) {
+    candidates = findStations(plane, 'all');
+    pose = findPose(plane, candidates, shapes);
+  }
   if (!pose || pose.discAgreement < leastAgreement) throw notFound(candidates.length, pose);
   return registerFrom(frame, pose.target, enlargeMap(pose.map, frame, plane.factor));
 }
