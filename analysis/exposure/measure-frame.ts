@@ -59,20 +59,19 @@ function countClipped(frame: Frame): Clipped {
 }
 
 /**
- * Four pixels at a time, in three words. A byte is 0, 1, 254 or 255 just when its top seven bits are alike, that is when bits 1 to 6
+ * Eight pixels at a time, in six words. A byte is 0, 1, 254 or 255 just when its top seven bits are alike, that is when bits 1 to 6
  * of it and of itself shifted by one differ nowhere. `spread` sets the top bit of every byte in which they do.
  */
 function countClippedBytes(data: Uint8Array): Clipped {
   const words = new Int32Array(data.buffer, data.byteOffset, data.length >> 2);
-  const end = words.length - 2;
+  const end = words.length - 5;
   const total: Clipped = { highlights: 0, shadows: 0 };
   let word = 0;
-  for (; word < end; word += 3) {
-    const a = words[word]!;
-    const b = words[word + 1]!;
-    const c = words[word + 2]!;
-    if ((spread(a) & spread(b) & spread(c) & 0x80808080) === topBits) continue;
-    addClipped(total, data, 4 * word, 4 * word + 12, 255);
+  for (; word < end; word += 6) {
+    const first = spread(words[word]!) & spread(words[word + 1]!) & spread(words[word + 2]!);
+    const second = spread(words[word + 3]!) & spread(words[word + 4]!) & spread(words[word + 5]!);
+    if ((first & second & topBits) === topBits) continue;
+    addClipped(total, data, 4 * word, 4 * word + 24, 255);
   }
   addClipped(total, data, 4 * word, data.length, 255);
   return total;
