@@ -71,14 +71,21 @@ export default async function LandingPage() {
             </li>
           ))}
         </ol>
-        <Sheet>
-          <h2>In whose terms</h2>
-          <p className="mt-2 max-w-text text-ink-2">
-            Sharpness follows ISO 12233, exposure ISO 12232, colour fringes ISO 19084, colour
-            difference ISO/CIE 11664-6, noise ISO 15739, shading ISO 17957. Each result carries its
-            expanded uncertainty; a grade is decided by JCGM 106, and what is in doubt never passes
-            silently.
-          </p>
+        <Sheet className="grid gap-x-8 gap-y-3 sm:grid-cols-2">
+          <div>
+            <h2>Measured by published standards</h2>
+            <p className="mt-2 text-ink-2">
+              Sharpness follows ISO 12233, exposure ISO 12232, colour fringes ISO 19084, colour
+              difference ISO/CIE 11664-6, noise ISO 15739, shading ISO 17957.
+            </p>
+          </div>
+          <div>
+            <h2>Graded without guessing</h2>
+            <p className="mt-2 text-ink-2">
+              Each result carries its expanded uncertainty, and a grade is decided by JCGM 106: what
+              is in doubt never passes silently.
+            </p>
+          </div>
         </Sheet>
       </main>
     </div>

@@ -29,10 +29,8 @@ export function RuleList({ rules }: { rules: readonly RuleOutcome[] }) {
             ) : null}
           </div>
           <div className="min-w-0">
-            <div className="flex flex-wrap justify-between gap-x-3">
-              <b className="tabular-nums">{ruleValue(rule)}</b>
-              <span className="label pt-0.5">{verdictOf(rule)}</span>
-            </div>
+            <b className="block tabular-nums">{ruleValue(rule)}</b>
+            <span className="label block">{verdictOf(rule)}</span>
             <ScaleLine data={rule} />
           </div>
         </li>

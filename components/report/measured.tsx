@@ -72,7 +72,7 @@ function Others({ measurements }: { measurements: ReportMeasurement[] }) {
   return (
     <div className="mt-6 print:mt-2">
       <h3>Measured as well</h3>
-      <dl className="mt-2 gap-x-8 sm:columns-2 print:columns-3 print:text-[13px] [&>div]:flex [&>div]:break-inside-avoid [&>div]:items-baseline [&>div]:justify-between [&>div]:gap-4 [&>div]:border-line-2 [&>div]:border-t [&>div]:py-1.5 [&_dd]:whitespace-nowrap [&_dd]:font-[560] [&_i]:text-[12.5px] [&_i]:text-ink-3 [&_i]:not-italic print:[&>div]:py-0.5 print:[&_i]:hidden">
+      <dl className="mt-2 gap-x-8 sm:columns-2 print:columns-3 print:text-[13px] [&>div]:flex [&>div]:break-inside-avoid [&>div]:items-baseline [&>div]:justify-between [&>div]:gap-4 [&>div]:border-line-2 [&>div]:border-t [&>div]:py-1.5 [&_dd]:whitespace-nowrap [&_dd]:font-[560] [&_i]:whitespace-nowrap [&_i]:text-[12.5px] [&_i]:text-ink-3 [&_i]:not-italic print:[&>div]:py-0.5 print:[&_i]:hidden">
         {measurements.map(({ name, zone, label, source, text }) => (
           <div key={`${label} ${name} ${zone ?? ''} ${text}`}>
             <dt className="min-w-0">

@@ -49,5 +49,5 @@ export function dayInWords(iso: string): string {
 
 /** "3 shots", "1 shot". */
 export function countOf(count: number, word: string): string {
-  return `${count} ${word}${count === 1 ? '' : 's'}`;
+  return `${count}\u00a0${word}${count === 1 ? '' : 's'}`;
 }

@@ -7,7 +7,7 @@ import { Section } from './parts';
 /** What was wrong, what was done, and what the hand can operate. */
 export function Repair({ content }: { content: ReportContent }) {
   return (
-    <div className="grid items-start gap-4 sm:grid-cols-2 print:gap-8">
+    <div className="grid items-stretch gap-4 sm:grid-cols-2 md:grid-cols-[minmax(0,1fr)_minmax(0,1.45fr)] print:gap-8">
       <RepairSummary content={content} />
       <Checks content={content} />
     </div>
@@ -76,11 +76,11 @@ function Checks({ content: { checks, rules } }: { content: ReportContent }) {
   return (
     <Section title={title} className="h-full">
       {checks.length === 0 ? <p className="text-ink-2">No checks are on record.</p> : null}
-      <ul className="-mt-1.5 print:columns-2">
+      <ul className="-mt-1.5 gap-x-6 md:columns-2 print:columns-2">
         {sorted.map(({ label, outcome, note }) => (
           <li
             key={label}
-            className="grid grid-cols-[18px_1fr] gap-2.5 border-line-2 border-t py-1.5 first:border-0 print:break-inside-avoid print:border-0 print:py-0"
+            className="grid break-inside-avoid grid-cols-[18px_1fr] gap-2.5 border-line-2 border-t py-1.5 max-md:first:border-0 print:border-0 print:py-0"
           >
             <StateDisc standing={outcomeStanding[outcome]} size={14} className="mt-1" />
             <span className="min-w-0">

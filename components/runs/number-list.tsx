@@ -1,3 +1,4 @@
+import { quantities } from '@/analysis/quantities';
 import { ScaleLine } from '@/components/pictures/scale-line';
 import { withDoubt } from '@/lib/shared/numbers';
 import type { RuleOutcome } from '@/lib/shared/report';
@@ -22,5 +23,9 @@ export function NumberList({ rules }: { rules: readonly RuleOutcome[] }) {
   );
 }
 
-export const ruleValue = ({ value, expanded, unit }: RuleOutcome) =>
-  value === null ? 'not tested' : withDoubt(value, expanded ?? 0, unit);
+/** A rule on function checks counts those that failed. */
+export function ruleValue({ value, expanded, unit, quantity }: RuleOutcome): string {
+  if (value === null) return 'not tested';
+  if (quantities.has(quantity)) return withDoubt(value, expanded ?? 0, unit);
+  return value === 0 ? 'none fails' : `${value} ${value === 1 ? 'fails' : 'fail'}`;
+}

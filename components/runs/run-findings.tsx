@@ -11,6 +11,7 @@ import {
   tellingCurves,
   withRunSharpness,
 } from '@/components/runs/run-pictures';
+import { cn } from '@/components/ui/cn';
 import { Panel, PanelHead } from '@/components/ui/panel';
 import type { RunDetail, ShotDetail } from '@/lib/shared/api';
 import {
@@ -51,8 +52,13 @@ export function RunFindings({
   const colours = analysis?.plots.colours;
   const fringes = fringeFinding(readings);
   return (
-    <>
-      <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1.25fr)_minmax(0,1fr)]">
+    <div
+      className={cn(
+        'grid items-start gap-3.5 lg:grid-cols-[minmax(0,1.25fr)_minmax(0,1fr)]',
+        graded || '2xl:grid-cols-[minmax(0,1.25fr)_minmax(0,1fr)_minmax(0,1fr)]',
+      )}
+    >
+      <div className="grid gap-3.5">
         <FindingPanel finding={sharpness} otherwise="Sharpness over the frame">
           {frame ? <FrameMap frame={frame} /> : <NoPicture />}
           {fringes ? (
@@ -61,33 +67,33 @@ export function RunFindings({
             </p>
           ) : null}
         </FindingPanel>
-        <div className="grid gap-3.5">
-          <FindingPanel finding={exposureFinding(readings)} otherwise="Exposure">
-            {analysis ? <Histogram bins={analysis.plots.histogram} /> : <NoPicture />}
-          </FindingPanel>
-          {graded ? null : <GradeSoFar proposal={run.proposal} />}
-        </div>
-      </div>
-      <div className="grid items-start gap-3.5 lg:grid-cols-2 2xl:grid-cols-3">
-        <FindingPanel finding={colourFinding(readings)} otherwise="Colours">
-          {colours?.length ? <AbPlane colours={colourPoints(colours)} /> : <NoPicture />}
-        </FindingPanel>
         <FindingPanel finding={edgeFinding(readings)} otherwise="Edges">
           {curves.length > 0 ? <MtfCurves curves={curves} /> : <NoPicture />}
         </FindingPanel>
-        {graded ? null : (
-          <Panel aria-label="Numbers" className="lg:max-2xl:col-span-2">
-            <PanelHead
-              title="Numbers"
-              aside={`${run.done} shots · ${run.peers.units} others of this model`}
-            />
-            {run.proposal ? <NumberList rules={run.proposal.rules} /> : <NoPicture />}
-          </Panel>
-        )}
       </div>
-    </>
+      <div className="grid gap-3.5">
+        <FindingPanel finding={exposureFinding(readings)} otherwise="Exposure">
+          {analysis ? <Histogram bins={analysis.plots.histogram} /> : <NoPicture />}
+        </FindingPanel>
+        {graded ? null : <GradeSoFar proposal={run.proposal} />}
+        <FindingPanel finding={colourFinding(readings)} otherwise="Colours">
+          {colours?.length ? <AbPlane colours={colourPoints(colours)} /> : <NoPicture />}
+        </FindingPanel>
+      </div>
+      {graded ? null : (
+        <Panel aria-label="Numbers" className="lg:max-2xl:col-span-2">
+          <PanelHead
+            title="Numbers"
+            aside={`${counted(run.done, 'shot')} · ${counted(run.peers.units, 'other')} of this model`}
+          />
+          {run.proposal ? <NumberList rules={run.proposal.rules} /> : <NoPicture />}
+        </Panel>
+      )}
+    </div>
   );
 }
+
+const counted = (count: number, word: string) => `${count} ${word}${count === 1 ? '' : 's'}`;
 
 function FindingPanel({
   finding,

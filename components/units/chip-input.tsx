@@ -4,6 +4,17 @@ import { useId, useState } from 'react';
 import { cn } from '@/components/ui/cn';
 import { controlClass } from '@/components/ui/field';
 
+/** Small, as they stand in a report's sentence; the buttons begin them with a capital. */
+export const usualAccessories: readonly string[] = [
+  'battery',
+  'charger',
+  'card',
+  'strap',
+  'lens cap',
+  'box',
+  'manual',
+];
+
 /** A short list put together by touching suggestions or typing one and pressing Enter. */
 export function ChipInput({
   label,
@@ -39,7 +50,7 @@ export function ChipInput({
               aria-pressed={on}
               onClick={() => toggle(item)}
               className={cn(
-                'min-h-9 rounded-full px-3 text-[14px] focus-visible:rounded-full',
+                'inline-block min-h-9 rounded-full px-3 text-[14px] first-letter:uppercase focus-visible:rounded-full',
                 on ? 'bg-ink font-semibold text-sheet' : 'shadow-[inset_0_0_0_1.5px_var(--line)]',
               )}
             >

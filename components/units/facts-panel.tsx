@@ -1,9 +1,10 @@
 import type { ReactNode } from 'react';
 import { Tag } from '@/components/ui/chip';
-import { Panel } from '@/components/ui/panel';
+import { Panel, PanelHead } from '@/components/ui/panel';
 import { bookedTime, day, money } from '@/lib/client/format';
 import type { UnitDetail } from '@/lib/shared/api';
 import { modelClassWords } from '@/lib/shared/words';
+import { FactsDialog } from './facts-dialog';
 
 /** What the unit is and how it came; one line a fact, nothing that isn't known. */
 export function FactsPanel({ unit, currency }: { unit: UnitDetail; currency: string }) {
@@ -21,6 +22,10 @@ export function FactsPanel({ unit, currency }: { unit: UnitDetail; currency: str
   ];
   return (
     <Panel aria-label="The unit">
+      <PanelHead
+        title="The unit"
+        aside={unit.may.edit ? <FactsDialog unit={unit} currency={currency} /> : undefined}
+      />
       <dl className="grid gap-x-4 gap-y-2 sm:grid-cols-[104px_minmax(0,1fr)]">
         {facts
           .filter(([, value]) => value)

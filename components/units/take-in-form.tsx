@@ -14,7 +14,7 @@ import { useShortcuts } from '@/lib/client/shortcuts';
 import type { UnitDetail } from '@/lib/shared/api';
 import { type UnitInput, unitInputSchema } from '@/lib/shared/schemas';
 import { type ModelClass, modelClasses, modelClassWords } from '@/lib/shared/words';
-import { ChipInput } from './chip-input';
+import { ChipInput, usualAccessories } from './chip-input';
 
 export interface KnownModel {
   maker: string;
@@ -22,8 +22,6 @@ export interface KnownModel {
   modelClass: ModelClass;
 }
 type UnitOutput = z.output<typeof unitInputSchema>;
-
-const usualAccessories = ['Battery', 'Charger', 'Card', 'Strap', 'Lens cap', 'Box', 'Manual'];
 
 /** Takes a camera in. What was typed stays when the server says no. */
 export function TakeInForm({ models, currency }: { models: KnownModel[]; currency: string }) {

@@ -33,18 +33,18 @@ export function UnitView({ first, currency }: { first: UnitDetail; currency: str
         }
         title={`${unit.maker} ${unit.model}`}
       />
-      <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1.25fr)_minmax(0,1fr)] 2xl:grid-cols-[minmax(0,1.2fr)_minmax(0,1fr)_minmax(0,0.8fr)]">
+      <div className="grid items-start gap-3.5 lg:grid-cols-[minmax(0,1.25fr)_minmax(0,1fr)] lg:max-2xl:grid-rows-[auto_1fr] 2xl:grid-cols-[minmax(0,1.2fr)_minmax(0,1fr)_minmax(0,0.8fr)]">
         <div className="grid content-start gap-3.5">
           <NextStepPanel unit={unit} onNewRun={open} />
           {unit.may.log ? <Cautions /> : null}
           <LogPanel unit={unit} currency={currency} />
         </div>
-        <div className="grid content-start gap-3.5">
+        <div className="grid content-start gap-3.5 lg:max-2xl:row-span-2">
           <GradePanel unit={unit} />
           <RunsPanel unit={unit} onNewRun={open} />
           <ChecksPanel unit={unit} />
         </div>
-        <div className="grid content-start gap-3.5 lg:max-2xl:col-span-2 lg:max-2xl:grid-cols-2">
+        <div className="grid content-start gap-3.5 xl:max-2xl:grid-cols-[minmax(0,1.3fr)_minmax(0,1fr)]">
           <FactsPanel unit={unit} currency={currency} />
           <Timeline changes={unit.changes} />
         </div>

@@ -31,6 +31,12 @@ export function money(minor: number, currency: string): string {
   );
 }
 
+/** Minor units as a person would type them: 4250, EUR → "42.50". */
+export function amountText(minor: number, currency: string): string {
+  const digits = fractionDigits(currency);
+  return (minor / 10 ** digits).toFixed(digits);
+}
+
 /** What a person typed as an amount, in minor units; undefined when empty, NaN when it is none. */
 export function parseMoney(typed: string, currency: string): number | undefined {
   const text = typed.trim().replace(',', '.');

@@ -40,6 +40,7 @@ export async function unitDetail(actor: Actor, unit: Unit): Promise<UnitDetail> 
     gradeSigned,
     report,
     may: {
+      edit: may(actor, 'unit.edit'),
       log: open && may(actor, 'log.add'),
       check: open && may(actor, 'check.save'),
       test: open && may(actor, 'run.create'),

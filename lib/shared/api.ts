@@ -74,6 +74,7 @@ export interface UnitDetail extends UnitRow {
   report: { slug: string; version: number; publishedAt: string; withdrawnAt: string | null } | null;
   /** What the reader may do now, decided by the server. */
   may: {
+    edit: boolean;
     log: boolean;
     check: boolean;
     test: boolean;

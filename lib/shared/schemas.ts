@@ -51,6 +51,7 @@ export const minorUnits = z
   .min(0, 'Enter an amount of zero or more.')
   .max(100_000_000);
 
+const accessories = z.array(z.string().trim().min(1).max(60)).max(30);
 export const unitInputSchema = z.strictObject({
   maker: line('the maker', 60),
   model: line('the model', 60),
@@ -59,12 +60,19 @@ export const unitInputSchema = z.strictObject({
   source: optionalLine(120),
   priceMinor: minorUnits.optional(),
   fault: line('the stated fault', 500),
-  accessories: z.array(z.string().trim().min(1).max(60)).max(30).default([]),
+  accessories: accessories.default([]),
   condition: optionalLine(500),
 });
 export type UnitInput = z.input<typeof unitInputSchema>;
+/** What is absent stays as it is, so that nothing here may have a default; null empties. */
 export const unitPatchSchema = unitInputSchema
   .omit({ maker: true, model: true, modelClass: true })
+  .extend({
+    source: optionalLine(120).nullable(),
+    condition: optionalLine(500).nullable(),
+    priceMinor: minorUnits.nullable(),
+    accessories,
+  })
   .partial();
 
 export const unitQuerySchema = z.object({

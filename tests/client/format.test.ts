@@ -2,6 +2,7 @@ import { expect, test } from 'vitest';
 import {
   about,
   age,
+  amountText,
   bookedTime,
   bytes,
   day,
@@ -23,6 +24,16 @@ test.each([
   ['-3', 'EUR', Number.NaN],
 ])('"%s" in %s is %d minor units', (typed, currency, minor) => {
   expect(parseMoney(typed, currency)).toEqual(minor);
+});
+
+// Truth: what is typed back is the same amount.
+test.each([
+  [4250, 'EUR', '42.50'],
+  [29, 'EUR', '0.29'],
+  [1200, 'JPY', '1200'],
+])('%d minor units in %s are typed "%s"', (minor, currency, text) => {
+  expect(amountText(minor, currency)).toBe(text);
+  expect(parseMoney(text, currency)).toBe(minor);
 });
 
 test('money is written in its currency', () => {
