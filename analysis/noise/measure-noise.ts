@@ -14,7 +14,8 @@ const fewestSpots = 4;
 
 /**
  * Signal-to-noise ratio at mid grey, dB: 20 log10(mean / σ) of luminance in the file's linear light on the plain background (18 %),
- * following ISO 15739 for one exposure. Slow gradients are removed from each spot; rounding to codes counts as the noise it is.
+ * following ISO 15739 for one exposure. Slow gradients are removed from each spot, and what rounding to codes adds:
+ * the figure tells of the camera, not of the file's depth. Noise too faint for that is given as the most it can be, with more doubt.
  * Given for the light at the target's middle, the spots further out being told apart by how much light they got.
  * @returns no metric and a warning when fewer than 4 spots are in the frame, unclipped and large enough
  */
@@ -22,15 +23,29 @@ export function measureNoise(
   frame: Frame,
   registration: Registration,
 ): { metrics: Metric[]; warnings: Warning[] } {
-  const spots: { spot: Spot; fromMiddle: number }[] = [];
+  const spots: PlacedSpot[] = [];
   for (const { x, y, radius } of registration.target.plain) {
     const at = registration.toImage(x, y);
     const rim = registration.toImage(x + radius * inset, y);
     const spot = measureSpot(frame, at, Math.hypot(rim.x - at.x, rim.y - at.y));
     if (spot) spots.push({ spot, fromMiddle: Math.hypot(x, y) });
   }
-  if (spots.length < fewestSpots) return { metrics: [], warnings: [tooFew(spots.length)] };
-  spots.sort((a, b) => a.fromMiddle - b.fromMiddle);
+  const metric = snrOf(spots);
+  return metric
+    ? { metrics: [metric], warnings: [] }
+    : { metrics: [], warnings: [tooFew(spots.length)] };
+}
+
+export interface PlacedSpot {
+  readonly spot: Spot;
+  /** Distance from the middle, any unit. */
+  readonly fromMiddle: number;
+}
+
+/** noise.snr for the light of the spots nearest the middle, from all of them; null with fewer than four. */
+export function snrOf(placed: readonly PlacedSpot[]): Metric | null {
+  if (placed.length < fewestSpots) return null;
+  const spots = placed.toSorted((a, b) => a.fromMiddle - b.fromMiddle);
   const middle = spots.slice(0, centreSpots).map(({ spot }) => Math.log(spot.mean));
   const reference = middle.reduce((s, v) => s + v, 0) / middle.length;
   const { logVariance, uncertainty } = atLight(
@@ -38,13 +53,12 @@ export function measureNoise(
     reference,
   );
   const toDecibel = 10 / Math.LN10;
-  const metric = {
+  return {
     name: 'noise.snr',
     value: -toDecibel * logVariance,
     unit: 'dB',
     uncertainty: toDecibel * uncertainty,
   };
-  return { metrics: [metric], warnings: [] };
 }
 
 /** Relative uncertainty of the variance that averaging doesn't lessen. Our choice: about 0.1 dB. */
@@ -75,10 +89,11 @@ function atLight(
     const y = Math.log(spot.variance / spot.mean ** 2) + 1 / spot.freedom;
     misfit += (spot.freedom / 2) * (y - logVariance - slope * x) ** 2;
   }
+  const roundingDoubt = spots.reduce((sum, spot) => sum + spot.roundingShare, 0) / spots.length;
   const widen = Math.max(1, misfit / (spots.length - 1));
   return {
     logVariance,
-    uncertainty: Math.hypot(Math.sqrt((widen * sxx) / determinant), systematic),
+    uncertainty: Math.hypot(Math.sqrt((widen * sxx) / determinant), systematic, roundingDoubt),
   };
 }
 

@@ -39,7 +39,7 @@ test.each(checks.values.snr_db.filter((c) => c.ratio >= 10 && c.ratio <= 100))(
   },
 );
 
-// Truth: planted by the renderer, rounding to codes included; limit: measurements.md, 0.5 dB from 20 to 40 dB on PNG.
+// Truth: planted by the renderer, before rounding to codes; limit: measurements.md, 0.5 dB from 20 to 40 dB on PNG.
 test.each([20, 30, 40])('a shaded photograph of %d dB, to 0.5 dB', async (snrDb) => {
   const { bytes, truth: planted } = await renderScene({
     width: 1200,
@@ -50,6 +50,21 @@ test.each([20, 30, 40])('a shaded photograph of %d dB, to 0.5 dB', async (snrDb)
   });
   const { metrics } = measureNoise(await decodeFrame(bytes), truthRegistration(planted));
   expect(Math.abs(metrics[0]!.value - planted.snrDb)).toBeLessThan(0.5);
+});
+
+// A twelfth of a squared code (Widrow & Kollár, from memory): at mid grey, 8 bits, about 48 dB in luminance.
+test('noise fainter than the rounding is told as the most it can be, with doubt', async () => {
+  const { bytes, truth: planted } = await renderScene({
+    width: 1000,
+    height: 750,
+    snrDb: 54,
+    format: { type: 'png' },
+  });
+  const { metrics } = measureNoise(await decodeFrame(bytes), truthRegistration(planted));
+  const { value, uncertainty } = metrics[0]!;
+  expect(value).toBeLessThan(planted.snrDb);
+  expect(Math.abs(value - planted.snrDb)).toBeLessThan(3 * uncertainty);
+  expect(uncertainty).toBeGreaterThan(2);
 });
 
 test('a clipped background gives a warning in place of a number', () => {
