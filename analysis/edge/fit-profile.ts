@@ -33,14 +33,25 @@ const leastNoise = 2e-4;
 /** Neighbouring bins share JPEG's errors, so that fewer of them are independent than there are. Found on rendered scenes. */
 const clumping = 1.2;
 
-/** @returns null when the profiles hold too little to fit. */
-export function fitProfile(profiles: readonly Profile[], sigma: number): ProfileFit | null {
+/** Where copies of an edge lie, px, and their weights, which sum to 1. */
+export type Copies = readonly { readonly at: number; readonly weight: number }[];
+const alone: Copies = [{ at: 0, weight: 1 }];
+
+/**
+ * @param copies  by profile: what of the fitted spread it is the sum of; absent: the spread itself
+ * @returns null when the profiles hold too little to fit
+ */
+export function fitProfile(
+  profiles: readonly Profile[],
+  sigma: number,
+  copies?: readonly Copies[],
+): ProfileFit | null {
   const widest = Math.max(2.2 * sigma, Math.min(3.6, shortestReach(profiles) / 2));
   const widths = ladder.map((factor) => factor * sigma).filter((width) => width <= widest);
   const skewWidths = skewLadder.map((factor) => factor * sigma);
   const shared = widths.length + skewWidths.length;
   const n = shared + 2 * profiles.length;
-  const system = assemble(profiles, sigma, widths, skewWidths);
+  const system = assemble(profiles, sigma, widths, skewWidths, copies);
   if (system.rows < n + 12) return null;
   let noise = 0.02;
   let solved: Solution | null = null;
@@ -84,6 +95,7 @@ function assemble(
   sigma: number,
   widths: readonly number[],
   skewWidths: readonly number[],
+  copies?: readonly Copies[],
 ): System {
   const shared = widths.length + skewWidths.length;
   const n = shared + 2 * profiles.length;
@@ -97,9 +109,7 @@ function assemble(
     row.fill(0);
     for (let i = 0; i < distance.length; i++) {
       const d = distance[i]!;
-      let at = 0;
-      for (const width of widths) row[at++] = fastNormalCdf(d / width);
-      for (const width of skewWidths) row[at++] = (normalDensity(d / width) * sigma) / width;
+      fillSpread(row, d, sigma, widths, skewWidths, copies?.[p] ?? alone);
       row[shared + 2 * p] = 1;
       row[shared + 2 * p + 1] = (d / 10) * (floor + fastNormalCdf(d / sigma));
       accumulate(normal, right, row, value[i]!, pixels[i]!);
@@ -108,6 +118,23 @@ function assemble(
     }
   });
   return { normal, right, total, rows };
+}
+
+function fillSpread(
+  row: Float64Array,
+  d: number,
+  sigma: number,
+  widths: readonly number[],
+  skewWidths: readonly number[],
+  copies: Copies,
+): void {
+  row.fill(0, 0, widths.length + skewWidths.length);
+  for (const { at, weight } of copies) {
+    let next = 0;
+    for (const width of widths) row[next++]! += weight * fastNormalCdf((d - at) / width);
+    for (const width of skewWidths)
+      row[next++]! += (weight * normalDensity((d - at) / width) * sigma) / width;
+  }
 }
 
 function accumulate(

@@ -1,4 +1,4 @@
-import { fitProfile, type ProfileFit, spreadAt } from '../edge/fit-profile.ts';
+import { type Copies, fitProfile, type ProfileFit, spreadAt } from '../edge/fit-profile.ts';
 import type { Luma } from '../edge/luma.ts';
 import type { ChannelTrace, EdgeTrace, Profile } from '../edge/trace-edges.ts';
 import type { Point } from '../image.ts';
@@ -13,7 +13,7 @@ type LumaEdge = EdgeTrace & { readonly luma: ChannelTrace };
 
 /** JFIF's weights of red, green and blue codes in luma (ITU-T T.871). */
 const weights = [0.299, 0.587, 0.114] as const;
-const passes = 3;
+const passes = 2;
 /** Spread of the channels' displacements, px², that blurs luma by less than a thousandth. */
 const negligible = 1e-3;
 
@@ -23,8 +23,8 @@ export function hasLuma(edge: EdgeTrace): edge is LumaEdge {
 
 /**
  * Halved chroma leaks into green: G = Y − 0.344 Cb − 0.714 Cr, so a green edge beside displaced colour is neither sharp nor green.
- * Luma is whole, and is red, green and blue of the same sharpness at displacements that are known. What the displacements do to
- * a spread is taken from the profiles and the spread fitted again, until it agrees with them.
+ * Luma is whole, and is red, green and blue of the same sharpness at displacements that are known: three copies of one spread, which
+ * is fitted to their sum. Codes add up, not light; what that changes is taken from the profiles with the spread as fitted before.
  */
 export function fitUnmixed(
   edges: readonly LumaEdge[],
@@ -32,19 +32,18 @@ export function fitUnmixed(
   shifts: ChannelShifts,
 ): ProfileFit | null {
   const sigma = edges.reduce((s, e) => s + e.luma.sigma, 0) / edges.length;
+  const profiles = edges.map((e) => e.luma.profile);
   const spread = spreadOfShifts(edges, shifts);
-  let fit = fitProfile(
-    edges.map((e) => e.luma.profile),
-    sigma,
-  );
-  if (spread < negligible) return fit;
+  if (spread < negligible) return fitProfile(profiles, sigma);
   const own = Math.sqrt(Math.max(sigma ** 2 - spread, (0.5 * sigma) ** 2));
+  const copies = edges.map(
+    (edge): Copies => alongNormal(edge, shifts).map((at, i) => ({ at, weight: weights[i]! })),
+  );
+  let fit = fitProfile(profiles, own, copies);
   for (let pass = 0; pass < passes && fit; pass++) {
     const before: ProfileFit = fit;
-    fit = fitProfile(
-      edges.map((e) => unmixed(e, luma, before, alongNormal(e, shifts))),
-      own,
-    );
+    const added = edges.map((edge, i) => addedLight(edge, luma, before, copies[i]!));
+    fit = fitProfile(added, own, copies);
   }
   return fit;
 }
@@ -66,22 +65,19 @@ function alongNormal({ normal }: EdgeTrace, { red, blue }: ChannelShifts): numbe
   return [r - mean, -mean, b - mean];
 }
 
-function unmixed(edge: LumaEdge, luma: Luma, fit: ProfileFit, shifts: readonly number[]): Profile {
+/** The profile as it would be if light were added up in place of codes. */
+function addedLight(edge: LumaEdge, luma: Luma, fit: ProfileFit, copies: Copies): Profile {
   const { profile, step, sigma } = edge.luma;
   // Falling edges are kept upside down, see edge/.
   const sign = profile.floor < 0 ? -1 : 1;
-  const lightAt = (d: number) => sign * (profile.floor + spreadAt(fit, d)) * step;
   const reach = 5 * sigma + 2;
   const value = profile.value.map((v, i) => {
     const d = profile.distance[i]!;
     if (Math.abs(d) > reach) return v;
-    const [red, green, blue] = shifts.map((shift) => lightAt(d - shift)) as [
-      number,
-      number,
-      number,
-    ];
-    const mixed = (sign * luma.mix(red, green, blue)) / step - profile.floor;
-    return v + spreadAt(fit, d) - mixed;
+    const spreads = copies.map(({ at }) => spreadAt(fit, d - at));
+    const [red, green, blue] = spreads.map((s) => sign * (profile.floor + s) * step);
+    const coded = (sign * luma.mix(red!, green!, blue!)) / step - profile.floor;
+    return v + spreads.reduce((sum, s, k) => sum + s * copies[k]!.weight, 0) - coded;
   });
   return { ...profile, value };
 }
