@@ -184,8 +184,9 @@ function binSamples(
   for (let i = 0; i < count; i++) {
     const t = along[i]!;
     const d = distance[i]! - shift - (tilt + bend * t) * t;
-    const bin = Math.floor((d + reach) * binsPerPixel);
-    if (bin < 0 || bin >= bins) continue;
+    const place = (d + reach) * binsPerPixel;
+    if (!(place >= 0 && place < bins)) continue;
+    const bin = place | 0;
     distanceSum[bin]! += d;
     lightSum[bin]! += light[i]!;
     pixels[bin]! += 1;
@@ -200,7 +201,8 @@ function packBins(
   scale: { low: number; gain: number; reach: number },
 ): Profile {
   const { low, gain, reach } = scale;
-  const filled = pixels.reduce((n, p) => (p > 0 ? n + 1 : n), 0);
+  let filled = 0;
+  for (let bin = 0; bin < pixels.length; bin++) if (pixels[bin]! > 0) filled++;
   const profile = {
     distance: new Float64Array(filled),
     value: new Float64Array(filled),
