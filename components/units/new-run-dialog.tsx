@@ -14,7 +14,7 @@ import { runInputSchema } from '@/lib/shared/schemas';
 
 type RunInput = z.output<typeof runInputSchema>;
 
-/** Starts a run. One after the repair also moves a unit from the bench to testing, because that is what it means. */
+/** Starts a run. The form comes into being as the dialog opens, so it offers what suits the unit as it stands then. */
 export function NewRunDialog({
   unit,
   open,
@@ -24,6 +24,20 @@ export function NewRunDialog({
   open: boolean;
   onOpenChange: (open: boolean) => void;
 }) {
+  return (
+    <Dialog
+      title="New test run"
+      description="One sitting of shots, all taken alike."
+      open={open}
+      onOpenChange={onOpenChange}
+    >
+      <NewRunForm unit={unit} />
+    </Dialog>
+  );
+}
+
+/** A run after the repair also moves a unit from the bench to testing, because that is what it means. */
+function NewRunForm({ unit }: { unit: UnitDetail }) {
   const router = useRouter();
   const phase = unit.state === 'received' ? 'before' : 'after';
   const { register, handleSubmit, formState } = useForm<RunInput>({
@@ -45,26 +59,19 @@ export function NewRunDialog({
     }),
   );
   return (
-    <Dialog
-      title="New test run"
-      description="One sitting of shots, all taken alike."
-      open={open}
-      onOpenChange={onOpenChange}
-    >
-      <form onSubmit={submit} noValidate className="grid gap-4">
-        <Input label="Title" error={formState.errors.title?.message} {...register('title')} />
-        <fieldset className="flex flex-wrap gap-2">
-          <legend className="mb-1.5 font-semibold text-[14px]">Taken</legend>
-          <Choice label="before the repair" value="before" {...register('phase')} />
-          <Choice label="after the repair" value="after" {...register('phase')} />
-        </fieldset>
-        <FormError>{start.isError ? sentenceOf(start.error) : null}</FormError>
-        <Actions>
-          <Button type="submit" busy={start.isPending || start.isSuccess}>
-            Start the run
-          </Button>
-        </Actions>
-      </form>
-    </Dialog>
+    <form onSubmit={submit} noValidate className="grid gap-4">
+      <Input label="Title" error={formState.errors.title?.message} {...register('title')} />
+      <fieldset className="flex flex-wrap gap-2">
+        <legend className="mb-1.5 font-semibold text-[14px]">Taken</legend>
+        <Choice label="before the repair" value="before" {...register('phase')} />
+        <Choice label="after the repair" value="after" {...register('phase')} />
+      </fieldset>
+      <FormError>{start.isError ? sentenceOf(start.error) : null}</FormError>
+      <Actions>
+        <Button type="submit" busy={start.isPending || start.isSuccess}>
+          Start the run
+        </Button>
+      </Actions>
+    </form>
   );
 }
