@@ -2,9 +2,12 @@
 
 import { useQueryClient } from '@tanstack/react-query';
 import Link from 'next/link';
+import { useRouter } from 'next/navigation';
+import { ButtonLink } from '@/components/ui/button';
 import { Tag } from '@/components/ui/chip';
 import { PageHead, Panel } from '@/components/ui/panel';
 import { useRun, useShot } from '@/lib/client/queries';
+import { useShortcuts } from '@/lib/client/shortcuts';
 import { useRunEvents, withShot } from '@/lib/client/use-run-events';
 import { useUploads } from '@/lib/client/use-uploads';
 import type { RunDetail, ShotDetail, ShotRow } from '@/lib/shared/api';
@@ -22,12 +25,16 @@ export function RunView({
   first,
   firstShot,
   siblings,
+  comparable,
 }: {
   first: RunDetail;
   firstShot: ShotDetail | null;
   siblings: { id: string; title: string }[];
+  /** There is a measured run from before the repair and one from after it. */
+  comparable: boolean;
 }) {
   const client = useQueryClient();
+  const router = useRouter();
   const poll = useRunEvents(first.id);
   const run = useRun(first, poll);
   const added = (shot: ShotRow) =>
@@ -37,6 +44,12 @@ export function RunView({
   const shot = useShot(shown?.id ?? null, firstShot ?? undefined).data ?? null;
   const empty = run.shots === 0 && uploads.length === 0;
   const pick = (files: File[]) => queue.add(files);
+  const compareAt = `/units/${run.unit.tag}/compare`;
+  useShortcuts(
+    comparable
+      ? [{ key: 'c', label: 'Compare before and after', run: () => router.push(compareAt) }]
+      : [],
+  );
   return (
     <>
       <PageHead
@@ -52,7 +65,16 @@ export function RunView({
           </>
         }
         title={run.title}
-        actions={<SendToGrading run={run} waiting={run.shots > run.done + run.failed || busy} />}
+        actions={
+          <>
+            {comparable ? (
+              <ButtonLink href={compareAt} hint="C">
+                {run.phase === 'after' ? 'Compare with before' : 'Compare with after'}
+              </ButtonLink>
+            ) : null}
+            <SendToGrading run={run} waiting={run.shots > run.done + run.failed || busy} />
+          </>
+        }
       />
       <DropZone disabled={!run.mayUpload} onFiles={pick}>
         {empty ? null : <RunToolbar run={run} siblings={siblings} pick={pick} />}

@@ -20,5 +20,14 @@ export default async function RunPage({ params }: Props) {
   const newest = newestTarget(run.shotList);
   const shot = newest ? await read(getShot(actor, newest.id)) : null;
   const siblings = unit.runs.map(({ id: runId, title }) => ({ id: runId, title })).reverse();
-  return <RunView key={id} first={run} firstShot={shot} siblings={siblings} />;
+  const measured = (phase: string) => unit.runs.some((r) => r.phase === phase && r.done > 0);
+  return (
+    <RunView
+      key={id}
+      first={run}
+      firstShot={shot}
+      siblings={siblings}
+      comparable={measured('before') && measured('after')}
+    />
+  );
 }
