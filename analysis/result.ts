@@ -57,8 +57,8 @@ export interface Plots {
   shading?: { columns: number; rows: number; ev: number[] };
   /** Dust or hot pixels, the most conspicuous first: place and diameter in px, contrast in % (of the light about it; of full scale). */
   spots?: { x: number; y: number; diameter: number; contrast: number }[];
-  /** Dominant colours as #rrggbb, the most frequent first, with their shares of the picture. */
-  palette?: { colour: string; share: number }[];
+  /** Dominant colours as #rrggbb, the most frequent first, with their shares; scatter: rms distance of pixels from them, codes of 255. */
+  palette?: { colours: { colour: string; share: number }[]; scatter: number };
   /** Kind ladder: each unclipped grey's reflectance times the light at its place, and the linear luminance that came out. */
   greys?: { light: number; luminance: number; uncertainty: number }[];
   /** Kind lag: what the timing page says, ms, and how many of the screen's frames the exposure lasted. */

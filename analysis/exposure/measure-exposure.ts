@@ -78,7 +78,8 @@ export function measureClipping({
   return [metric('clip.highlights', clippedHighlights), metric('clip.shadows', clippedShadows)];
 }
 
-const automatic = new Set([
+/** Exif programs in which the camera sets the exposure. */
+export const automatic: ReadonlySet<string> = new Set([
   'program',
   'aperture-priority',
   'shutter-priority',

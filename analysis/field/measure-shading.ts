@@ -55,7 +55,7 @@ function position(frame: Frame, x: number, y: number): [number, number] {
   return [(x - frame.width / 2) / half, (y - frame.height / 2) / half];
 }
 
-function gridOf(frame: Frame, fit: ShadingFit): number[] {
+export function gridOf(frame: Frame, fit: ShadingFit): number[] {
   const ev: number[] = [];
   for (let row = 0; row < rows; row++)
     for (let col = 0; col < columns; col++) {
@@ -66,7 +66,7 @@ function gridOf(frame: Frame, fit: ShadingFit): number[] {
   return ev;
 }
 
-function cornerMetrics(fit: ShadingFit, frame: Frame): Metric[] {
+export function cornerMetrics(fit: ShadingFit, frame: Frame): Metric[] {
   const { width, height } = frame;
   const corners = [
     { zone: 'NW', at: position(frame, 0, 0) },

@@ -30,6 +30,14 @@ export const metricOutputSchema = z.strictObject({
   lwph: z.number().optional(),
 });
 
+/** The one metric whose value is a list: colours as #rrggbb; its uncertainty is how far, in codes of 255, pixels lie from them (rms). */
+export const paletteOutputSchema = z.strictObject({
+  name: z.literal('scene.palette'),
+  value: z.array(z.string().regex(/^#[0-9a-f]{6}$/)).min(1),
+  unit: z.literal('sRGB'),
+  uncertainty: z.number().min(0),
+});
+
 export const warningOutputSchema = z.strictObject({
   code: z.string().regex(/^[a-z0-9]+(-[a-z0-9]+)*$/),
   message: z.string(),
@@ -39,6 +47,8 @@ export const warningOutputSchema = z.strictObject({
 export const analysisOutputSchema = z.strictObject({
   file: z.string(),
   kind: z.enum(['target', 'grey', 'flat', 'dark', 'ladder', 'lag', 'scene']),
+  /** How surely the kind was told; only where it wasn't given. */
+  kindConfidence: z.number().min(0).max(1).optional(),
   width: z.int(),
   height: z.int(),
   capture: captureOutputSchema,
@@ -51,7 +61,7 @@ export const analysisOutputSchema = z.strictObject({
       rings: z.record(z.string(), z.tuple([z.number(), z.number()])),
     })
     .optional(),
-  metrics: z.array(metricOutputSchema),
+  metrics: z.array(z.union([metricOutputSchema, paletteOutputSchema])),
   warnings: z.array(warningOutputSchema),
   milliseconds: z.strictObject({
     decode: z.number(),
@@ -77,16 +87,18 @@ export type GroupOutput = z.infer<typeof groupOutputSchema>;
 
 /** The part of an analysis that the command prints: no drawings' data, numbers rounded to what they can mean. */
 export function toAnalysisOutput(file: string, analysis: Analysis): AnalysisOutput {
-  const { kind, width, height, capture, registration, warnings, milliseconds } = analysis;
+  const { kind, kindConfidence, width, height, capture, registration, warnings, milliseconds } =
+    analysis;
   const { flash: _flash, software: _software, ...rest } = capture;
   return {
     file,
     kind,
+    ...(kindConfidence === undefined ? {} : { kindConfidence: roundHundredth(kindConfidence) }),
     width,
     height,
     capture: rest,
     ...(registration ? { registration } : {}),
-    metrics: analysis.metrics.map(roundMetric),
+    metrics: [...analysis.metrics.map(roundMetric), ...paletteOf(analysis)],
     warnings,
     milliseconds: {
       decode: roundTenth(milliseconds.decode),
@@ -106,6 +118,19 @@ export function toGroupOutput(
   return { group, files, metrics: result.metrics.map(roundMetric), warnings: result.warnings };
 }
 
+function paletteOf({ plots }: Analysis): z.infer<typeof paletteOutputSchema>[] {
+  if (!plots.palette) return [];
+  const { colours, scatter } = plots.palette;
+  return [
+    {
+      name: 'scene.palette',
+      value: colours.map(({ colour }) => colour),
+      unit: 'sRGB',
+      uncertainty: roundTenth(scatter),
+    },
+  ];
+}
+
 function roundMetric(metric: Metric): Metric {
   const { value, uncertainty, tangential, lwph } = metric;
   return {
@@ -120,6 +145,10 @@ function roundMetric(metric: Metric): Metric {
 /** Six significant digits: well below any uncertainty. */
 function roundSix(value: number): number {
   return Number(value.toPrecision(6));
+}
+
+function roundHundredth(value: number): number {
+  return Math.round(value * 100) / 100;
 }
 
 function roundTenth(value: number): number {
