@@ -58,12 +58,15 @@ describe('imports point one way', () => {
     expect(wrong).toEqual([]);
   });
 
-  test('the scene renderer shares nothing with the analysis but the target and its types', () => {
+  test('the scene renderer shares nothing with the analysis but the target, the timing page’s geometry and its types', () => {
     const shared = files
       .filter(({ path }) => below(path, 'fixtures/scene'))
       .flatMap((file) => importsOf(file).filter((name) => below(name, 'analysis')))
       .filter(
-        (name) => !/^analysis\/(target\/target(-\dx\d)?|image|result)(\.(ts|json))?$/.test(name),
+        (name) =>
+          !/^analysis\/(target\/target(-\dx\d)?|time\/timing-page\.json|image|result)(\.(ts|json))?$/.test(
+            name,
+          ),
       );
     expect(shared).toEqual([]);
   });

@@ -12,7 +12,12 @@ export type QuantityName =
   | 'colour.saturation'
   | 'noise.snr'
   | 'shading.corner'
-  | 'distortion.corner';
+  | 'distortion.corner'
+  | 'ladder.step'
+  | 'lag reading'
+  | 'lag.shutter'
+  | 'dark.hot'
+  | 'dust.count';
 
 /** One line of the printed table. */
 export interface Row {
@@ -116,6 +121,30 @@ export const rows: readonly Row[] = [
     stated: true,
   },
   {
+    name: 'ladder.step',
+    quantity: 'ladder.step',
+    suites: ['ladder'],
+    unit: 'EV',
+    allowed: { largest: 0.03 },
+    stated: true,
+  },
+  {
+    name: 'lag.shutter, one photograph',
+    quantity: 'lag reading',
+    suites: ['timing'],
+    unit: 'ms',
+    allowed: { largest: 16.67 },
+    stated: false,
+  },
+  {
+    name: 'lag.shutter, mean of five',
+    quantity: 'lag.shutter',
+    suites: ['timing'],
+    unit: 'ms',
+    allowed: {},
+    stated: true,
+  },
+  {
     name: 'fringe across the radius, 4:4:4',
     quantity: 'fringe across',
     suites: ['clean'],
@@ -138,5 +167,37 @@ export const rows: readonly Row[] = [
     unit: '%',
     allowed: {},
     stated: false,
+  },
+  {
+    name: 'dark.hot, missed and invented',
+    quantity: 'dark.hot',
+    suites: ['lens cap'],
+    unit: '1',
+    allowed: { largest: 0 },
+    stated: false,
+  },
+  {
+    name: 'dust.count, missed and invented',
+    quantity: 'dust.count',
+    suites: ['dust'],
+    unit: '1',
+    allowed: { largest: 0 },
+    stated: false,
+  },
+  {
+    name: 'exposure.bias, grey card',
+    quantity: 'exposure.bias',
+    suites: ['card'],
+    unit: 'EV',
+    allowed: { largest: 0.02 },
+    stated: true,
+  },
+  {
+    name: 'shading.corner, flat field',
+    quantity: 'shading.corner',
+    suites: ['flat field'],
+    unit: 'EV',
+    allowed: { largest: 0.03 },
+    stated: true,
   },
 ];

@@ -3,7 +3,7 @@ import { createRandom } from '../../fixtures/scene/random.ts';
 import { sceneTruth } from '../../fixtures/scene/truth.ts';
 
 /** Sets of conditions, each after a row or rows of measurements.md's "How close". */
-export const suiteNames = [
+export const sceneSuites = [
   'registration',
   'clean',
   'noisy',
@@ -13,27 +13,39 @@ export const suiteNames = [
   'noise',
   'shading',
 ] as const;
-export type SuiteName = (typeof suiteNames)[number];
+export type SceneSuite = (typeof sceneSuites)[number];
+/** Suites whose scenes are several photographs: see run-group.ts. */
+export const groupSuites = ['ladder', 'timing'] as const;
+export type GroupSuite = (typeof groupSuites)[number];
+/** Suites of photographs without a target: see run-plain.ts. */
+export const plainSuites = ['lens cap', 'dust', 'card', 'flat field'] as const;
+export type PlainSuite = (typeof plainSuites)[number];
+export const suiteNames = [...sceneSuites, ...groupSuites, ...plainSuites] as const;
+export type SuiteName = SceneSuite | GroupSuite | PlainSuite;
 
-interface Dice {
+export interface Dice {
   between(low: number, high: number): number;
   chance(probability: number): boolean;
   pick<T>(choices: readonly T[]): T;
 }
 
 /** The seeded plan of a suite's scene; redrawn until it meets the suite's own condition. */
-export function planOf(suite: SuiteName, seed: number): ScenePlan {
-  const random = createRandom(seed * 7919 + suiteNames.indexOf(suite) * 104729);
-  const dice: Dice = {
-    between: (low, high) => low + (high - low) * random(),
-    chance: (probability) => random() < probability,
-    pick: (choices) => choices[Math.floor(random() * choices.length)]!,
-  };
+export function planOf(suite: SceneSuite, seed: number): ScenePlan {
+  const dice = diceOf(suite, seed);
   for (let attempt = 0; attempt < 500; attempt++) {
     const { plan, accept } = suites[suite](dice);
     if (accept(plan)) return { ...plan, seed: seed + 1 };
   }
   throw new Error(`no plan of suite ${suite} met its condition, seed ${seed}`);
+}
+
+export function diceOf(suite: SuiteName, seed: number): Dice {
+  const random = createRandom(seed * 7919 + suiteNames.indexOf(suite) * 104729);
+  return {
+    between: (low, high) => low + (high - low) * random(),
+    chance: (probability) => random() < probability,
+    pick: (choices) => choices[Math.floor(random() * choices.length)]!,
+  };
 }
 
 type Draw = (dice: Dice) => { plan: ScenePlan; accept: (plan: ScenePlan) => boolean };
@@ -42,7 +54,7 @@ const ringsInFrame = (plan: ScenePlan) => Object.keys(sceneTruth(plan).rings).le
 const unclipped = (plan: ScenePlan) => sceneTruth(plan).clippedDiscs.length === 0;
 
 /** A camera on a stand: nearly square to the target, which nearly fills the frame. */
-function stand(dice: Dice): ScenePlan {
+export function stand(dice: Dice): ScenePlan {
   const target = dice.pick(['4x3', '4x3', '3x2'] as const);
   return {
     target,
@@ -72,7 +84,7 @@ function fringes(dice: Dice): ScenePlan {
   };
 }
 
-function rendering(dice: Dice): ScenePlan {
+export function rendering(dice: Dice): ScenePlan {
   return {
     toneContrast: dice.between(0.8, 1.4),
     whiteGains: [dice.between(0.92, 1.08), 1, dice.between(0.92, 1.08)],
@@ -80,7 +92,7 @@ function rendering(dice: Dice): ScenePlan {
   };
 }
 
-function jpeg(quality: number, subsampling: '4:4:4' | '4:2:0'): FormatPlan {
+export function jpeg(quality: number, subsampling: '4:4:4' | '4:2:0'): FormatPlan {
   return { type: 'jpeg', quality: Math.round(quality), subsampling };
 }
 
@@ -95,7 +107,7 @@ const sizes = [
   [4000, 3000],
 ] as const;
 
-const suites: Record<SuiteName, Draw> = {
+const suites: Record<SceneSuite, Draw> = {
   /** Any rotation, tilt to 8°, barrel or pincushion to 8 %, σ to 2.5 px, −2 to +1 EV, VGA to 24 MP, 60–100 %, JPEG 85 4:2:0, 23 dB. */
   registration(dice) {
     const size = dice.chance(0.02) ? ([6000, 4000] as const) : dice.pick(sizes);
