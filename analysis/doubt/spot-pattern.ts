@@ -168,38 +168,44 @@ function createTransform(side: number, window: Float64Array) {
   const half = side / 2 + 1;
   const cos = Float64Array.from({ length: side }, (_, i) => Math.cos((2 * Math.PI * i) / side));
   const sin = Float64Array.from({ length: side }, (_, i) => -Math.sin((2 * Math.PI * i) / side));
+  const row = new Float64Array(side);
   const rowReal = new Float64Array(side * half);
   const rowImaginary = new Float64Array(side * half);
   return (plane: Float64Array): [Float64Array, Float64Array] => {
-    for (let y = 0; y < side; y++)
+    for (let y = 0; y < side; y++) {
+      for (let x = 0; x < side; x++) row[x] = plane[y * side + x]! * window[x]! * window[y]!;
       for (let k = 0; k < half; k++) {
-        let re = 0;
-        let im = 0;
-        for (let x = 0; x < side; x++) {
-          const value = plane[y * side + x]! * window[x]! * window[y]!;
-          re += value * cos[(k * x) % side]!;
-          im += value * sin[(k * x) % side]!;
-        }
-        rowReal[y * half + k] = re;
-        rowImaginary[y * half + k] = im;
+        rowReal[y * half + k] = project(row, cos, k);
+        rowImaginary[y * half + k] = project(row, sin, k);
       }
+    }
     const real = new Float64Array(side * half);
     const imaginary = new Float64Array(side * half);
-    for (let l = 0; l < side; l++)
-      for (let k = 0; k < half; k++) {
-        let re = 0;
-        let im = 0;
-        for (let y = 0; y < side; y++) {
-          const [c, s] = [cos[(l * y) % side]!, sin[(l * y) % side]!];
-          const [a, b] = [rowReal[y * half + k]!, rowImaginary[y * half + k]!];
-          re += a * c - b * s;
-          im += a * s + b * c;
-        }
-        real[l * half + k] = re;
-        imaginary[l * half + k] = im;
+    const column = { real: new Float64Array(side), imaginary: new Float64Array(side) };
+    for (let k = 0; k < half; k++) {
+      for (let y = 0; y < side; y++) {
+        column.real[y] = rowReal[y * half + k]!;
+        column.imaginary[y] = rowImaginary[y * half + k]!;
       }
+      for (let l = 0; l < side; l++) {
+        real[l * half + k] = project(column.real, cos, l) - project(column.imaginary, sin, l);
+        imaginary[l * half + k] = project(column.real, sin, l) + project(column.imaginary, cos, l);
+      }
+    }
     return [real, imaginary];
   };
+}
+
+/** Σ value · wave at `frequency` turns a length; the wave's table is as long as the values. */
+function project(values: Float64Array, wave: Float64Array, frequency: number): number {
+  const side = wave.length;
+  let sum = 0;
+  for (let i = 0, turn = 0; i < side; i++) {
+    sum += values[i]! * wave[turn]!;
+    turn += frequency;
+    if (turn >= side) turn -= side;
+  }
+  return sum;
 }
 
 function mean(values: ArrayLike<number>): number {
