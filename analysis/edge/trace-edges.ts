@@ -100,7 +100,8 @@ export function traceEdges(frame: Frame, registration: Registration, tables: Lig
   return { edges, luma, refused };
 }
 
-function traceEdge(
+/** One edge, or why it can't be read. `least` widens the profile's reach, px; `samples` is scratch space. */
+export function traceEdge(
   frame: Frame,
   tables: LightTables,
   lumaTable: Float32Array | null,

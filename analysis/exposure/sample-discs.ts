@@ -17,7 +17,7 @@ const pixelsPerIndependent = 4;
  * Reads every disc of the target that lies wholly in the frame.
  * @returns in the target's order, `light` 1 until the shading is known; discs outside the frame or under 12 pixels are left out
  */
-export function sampleDiscs(frame: Frame, registration: Registration): DiscSample[] {
+export function sampleDiscs(frame: Frame, registration: PlacedDiscs): DiscSample[] {
   const reader = createReader(frame);
   const samples: DiscSample[] = [];
   for (const disc of registration.target.discs) {
@@ -25,6 +25,11 @@ export function sampleDiscs(frame: Frame, registration: Registration): DiscSampl
     if (sample) samples.push(sample);
   }
   return samples;
+}
+
+/** Discs and where they lie: the target's registration, or a card's. */
+export interface PlacedDiscs extends Pick<Registration, 'toImage' | 'jacobian'> {
+  readonly target: { readonly discs: readonly Disc[] };
 }
 
 interface PlacedDisc {
@@ -37,7 +42,7 @@ interface PlacedDisc {
   halfHeight: number;
 }
 
-function placeDisc(registration: Registration, disc: Disc): PlacedDisc {
+function placeDisc(registration: PlacedDiscs, disc: Disc): PlacedDisc {
   const { x, y } = registration.toImage(disc.x, disc.y);
   const [a, b, c, d] = registration.jacobian(disc.x, disc.y);
   const determinant = a * d - b * c;

@@ -108,7 +108,7 @@ interface Surroundings {
 }
 
 /** Both parallel edges together, or why they can't be read; null without an edge. */
-function readDirection(
+export function readDirection(
   edges: readonly EdgeTrace[],
   edge: Edge,
   { traces: { luma }, shifts, frame }: Surroundings,
@@ -184,20 +184,27 @@ function widened(estimate: Estimate, by: number): Estimate {
   return { value: estimate.value, uncertainty: Math.hypot(estimate.uncertainty, by) };
 }
 
-function edgeMetrics(s: EdgeSharpness, zone: string, frameHeight: number): Metric[] {
+/** Without a zone, the metrics have none. */
+export function edgeMetrics(
+  s: EdgeSharpness,
+  zone: string | undefined,
+  frameHeight: number,
+): Metric[] {
   const { edge } = s;
   const lwph = 2 * s.mtf50.value * frameHeight;
+  const place = zone === undefined ? { edge } : { zone, edge };
   const metrics: Metric[] = [
-    { name: 'sharpness.mtf50', zone, edge, ...s.mtf50, unit: 'cy/px', lwph },
-    { name: 'sharpness.nyquist', zone, edge, ...s.nyquist, unit: '%' },
-    { name: 'sharpness.rise', zone, edge, ...s.rise, unit: 'px' },
-    { name: 'sharpness.overshoot', zone, edge, ...s.overshoot, unit: '%' },
+    { name: 'sharpness.mtf50', ...place, ...s.mtf50, unit: 'cy/px', lwph },
+    { name: 'sharpness.nyquist', ...place, ...s.nyquist, unit: '%' },
+    { name: 'sharpness.rise', ...place, ...s.rise, unit: 'px' },
+    { name: 'sharpness.overshoot', ...place, ...s.overshoot, unit: '%' },
   ];
-  if (s.mtf10) metrics.push({ name: 'sharpness.mtf10', zone, edge, ...s.mtf10, unit: 'cy/px' });
+  if (s.mtf10) metrics.push({ name: 'sharpness.mtf10', ...place, ...s.mtf10, unit: 'cy/px' });
   return metrics;
 }
 
-function curveOf(fit: ProfileFit): { frequency: number[]; response: number[] } {
+/** The SFR from 0 to 0.5 cy/px. */
+export function curveOf(fit: ProfileFit): { frequency: number[]; response: number[] } {
   const frequency = Array.from({ length: curvePoints }, (_, i) => (0.5 * i) / (curvePoints - 1));
   return { frequency, response: frequency.map((f) => (f === 0 ? 1 : responseAt(fit, f))) };
 }
