@@ -1,4 +1,4 @@
-import { fastNormalCdf, normalDensity } from '../numeric/normal.ts';
+import { fastNormalCdf, fastNormalDensity, normalDensity } from '../numeric/normal.ts';
 import { solveSpd } from '../numeric/spd.ts';
 import { binsPerPixel, type Profile } from './trace-edges.ts';
 
@@ -133,7 +133,7 @@ function fillSpread(
     let next = 0;
     for (const width of widths) row[next++]! += weight * fastNormalCdf((d - at) / width);
     for (const width of skewWidths)
-      row[next++]! += (weight * normalDensity((d - at) / width) * sigma) / width;
+      row[next++]! += (weight * fastNormalDensity((d - at) / width) * sigma) / width;
   }
 }
 
