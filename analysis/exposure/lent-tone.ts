@@ -22,7 +22,7 @@ export interface LightScale {
 /** Standard deviation of the mid-tone contrast of ordinary renderings about 1. Common practice, no source: 0.8–1.4 are met. */
 export const contrastSpread = 0.18;
 /** Doubt of one lent point, stops; the greys of a target shot give some hundredths. Found by rendering. */
-const pointDoubt = 0.01;
+const pointDoubt = 0.006;
 const fewestPoints = 4;
 
 /** @param points the greys of the target shot that are unclipped; with fewer than four the sRGB curve is assumed */

@@ -8,6 +8,9 @@ export interface Evenness {
   readonly range: number;
   /** Mean luminance, file's linear light. */
   readonly mean: number;
+  /** The smooth surface at the frame's centre and at a block of the grid. */
+  readonly atCentre: number;
+  surfaceAt(block: number): number;
 }
 
 const terms = 10;
@@ -39,6 +42,8 @@ export function evennessOf(blocks: BlockMeans, among: readonly number[]): Evenne
     roughness: Math.sqrt(squares / among.length) / mean,
     range: Math.log2(high / low),
     mean,
+    atCentre: right[0]!,
+    surfaceAt: (block) => basisAt(blocks, block).reduce((s, r, j) => s + r * right[j]!, 0),
   };
 }
 

@@ -5,7 +5,7 @@ import { MeasurementError } from '../errors.ts';
 import type { LightScale } from '../exposure/lent-tone.ts';
 import { automatic } from '../exposure/measure-exposure.ts';
 import { type BlockMeans, readBlocks } from '../field/block-means.ts';
-import { evennessOf, growFromMiddle } from '../field/evenness.ts';
+import { type Evenness, evennessOf, growFromMiddle } from '../field/evenness.ts';
 import type { Capture, Frame } from '../image.ts';
 import { type PlacedSpot, snrOf } from '../noise/measure-noise.ts';
 import { measureSpot } from '../noise/measure-spot.ts';
@@ -24,10 +24,10 @@ const leastShare = 0.1;
 const middleHalf = 0.15;
 const middleShare = 0.85;
 /** What is left of rounding and of the card's own unevenness in a mean over its middle: stops, and codes of 255 a channel. */
-const doubtStops = 0.008;
+const doubtStops = 0.004;
 const doubtCode = 0.12;
 
-export interface Card {
+export interface Card extends Evenness {
   readonly blocks: BlockMeans;
   /** Blocks that lie wholly on the card. */
   readonly inside: readonly number[];
@@ -35,8 +35,6 @@ export interface Card {
   readonly share: number;
   /** Part of the frame's middle that the card fills, 0…1. */
   readonly ofMiddle: number;
-  readonly roughness: number;
-  readonly range: number;
 }
 
 /** The even surface about the frame's middle, whatever it is; null where there is none. */
@@ -126,20 +124,19 @@ function refuse(card: Card | null): asserts card is Card {
   }
 }
 
-/** Means of the card's blocks nearest the frame's middle. */
-function middleOf({
-  blocks,
-  inside,
-}: Card): Record<'red' | 'green' | 'blue' | 'luminance', number> {
+/** Means of the card's blocks nearest the frame's middle, the luminance carried on to its centre by the light's smooth fall. */
+function middleOf(card: Card): Record<'red' | 'green' | 'blue' | 'luminance', number> {
+  const { blocks, inside } = card;
   const near = inside
     .toSorted((a, b) => fromMiddle(blocks, a) - fromMiddle(blocks, b))
     .slice(0, 24);
   const mean = (values: Float64Array) => near.reduce((s, b) => s + values[b]!, 0) / near.length;
+  const surface = near.reduce((sum, b) => sum + card.surfaceAt(b), 0) / near.length;
   return {
     red: mean(blocks.red),
     green: mean(blocks.green),
     blue: mean(blocks.blue),
-    luminance: mean(blocks.luminance),
+    luminance: (mean(blocks.luminance) * card.atCentre) / surface,
   };
 }
 

@@ -2,6 +2,7 @@ import { readBlocks } from '../field/block-means.ts';
 import { evennessOf, everyBlock } from '../field/evenness.ts';
 import type { Capture, Frame } from '../image.ts';
 import type { Kind } from '../result.ts';
+import { findPage } from '../time/find-page.ts';
 import { findCard } from './measure-grey.ts';
 
 export interface ToldKind {
@@ -24,10 +25,20 @@ const coloured = 0.12;
 /**
  * What a frame shows when no target is in it and nothing was said, from how even it is, its level and the aperture.
  * A plain frame that is filled wholly is a flat field at f/11 and smaller or when it's brighter than a card is exposed; a card otherwise,
- * as is an even neutral surface that fills most of the middle before something else. All else is a scene.
+ * as is an even neutral surface that fills most of the middle before something else. The timing page is known by its rings and checksum.
+ * All else is a scene; a rung of a ladder is a target like another until it is said to be one.
  */
 export function tellKind(frame: Frame, capture: Capture): ToldKind {
-  return tellPlain(frame, capture) ?? tellCard(frame) ?? { kind: 'scene', confidence: 0.8 };
+  return (
+    tellPlain(frame, capture) ??
+    tellPage(frame) ??
+    tellCard(frame) ?? { kind: 'scene', confidence: 0.8 }
+  );
+}
+
+/** The timing page says itself what it is: four rings with an eight-bit checksum between them. */
+function tellPage(frame: Frame): ToldKind | null {
+  return findPage(frame) ? { kind: 'lag', confidence: 0.99 } : null;
 }
 
 /** Dark, flat and grey frames without anything in them; null for all others. Quick, and so surely no target that none is looked for. */

@@ -47,13 +47,14 @@ function scatter<T extends { x: number; y: number }>(
 async function runDark(dice: Dice, seed: number): Promise<PlainResult> {
   const noise = dice.between(0.4, 4);
   const level = dice.between(0, 4) * noise;
+  const banding = dice.chance(0.5) ? dice.between(0, 0.5) * noise : 0;
   const draw = () => ({
     x: Math.floor(dice.between(0, size.width)),
     y: Math.floor(dice.between(0, size.height)),
-    code: Math.ceil(level + Math.max(6 * noise, 2) * dice.between(1, 3)),
+    // A hot pixel is planted as a code, whatever its row's own offset: that much higher it stands out of any row by 6 σ.
+    code: Math.ceil(level + 3.5 * banding + Math.max(6 * noise, 2) * dice.between(1, 3)),
   });
   const hot = scatter(15, draw, () => 10);
-  const banding = dice.chance(0.5) ? dice.between(0, 0.5) * noise : 0;
   const plan = { ...size, level, noise, banding, hot, seed, format: { type: 'png' } as const };
   const analysis = await analyseBytes(await renderDark(plan), { kind: 'dark' });
   return { plan, samples: [countSample('dark.hot', analysis, hot, () => 2)] };
