@@ -50,6 +50,14 @@ describe('the timing page is read within one frame of a 60 Hz screen', () => {
   });
 });
 
+test('kind auto knows the timing page', async () => {
+  const bytes = await renderTimingPage({ width: 800, height: 600, startFrame: 30.2 });
+  const { kind, kindConfidence, metrics } = await analyseBytes(bytes);
+  expect(kind).toBe('lag');
+  expect(kindConfidence).toBeGreaterThan(0.9);
+  expect(metrics[0]?.name).toBe('lag.shutter');
+});
+
 describe('what can’t be read is refused', () => {
   test('another picture', async () => {
     const { bytes } = await renderScene({ width: 800, height: 600 });
