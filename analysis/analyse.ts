@@ -1,8 +1,15 @@
 import { measureFringes } from './chromatic/measure-fringes.ts';
 import type { DiscSample } from './colour/disc-sample.ts';
 import { measureColour } from './colour/measure-colour.ts';
+import { applyDoubts } from './doubt/doubt.ts';
+import { doubtCompression } from './doubt/doubt-file.ts';
+import { doubtRegistration } from './doubt/doubt-registration.ts';
+import { doubtSharpness } from './doubt/doubt-sharpness.ts';
+import { doubtSpots } from './doubt/doubt-spots.ts';
+import { doubtTone, judgeDiscs } from './doubt/judge-discs.ts';
 import { traceEdges } from './edge/trace-edges.ts';
 import { MeasurementError } from './errors.ts';
+import type { TonePoint } from './exposure/lent-tone.ts';
 import { measureClipping, measureExposure, measureMedian } from './exposure/measure-exposure.ts';
 import { measureFrame } from './exposure/measure-frame.ts';
 import { sampleDiscs } from './exposure/sample-discs.ts';
@@ -10,6 +17,8 @@ import { measureTone, plotTone, type ToneResponse } from './exposure/tone.ts';
 import { measureShading, type ShadingResult } from './field/measure-shading.ts';
 import type { Capture, Frame } from './image.ts';
 import { measureNoise } from './noise/measure-noise.ts';
+import { analysePlain, isPlainKind } from './kinds/analyse-plain.ts';
+import { type ToldKind, tellKind, tellPlain } from './kinds/tell-kind.ts';
 import { plotDiscs, plotOutline, plotStations } from './plots.ts';
 import type { Analysis, Kind, Metric, Plots, Shape, Warning } from './result.ts';
 import { measureSharpness } from './sharpness/measure-sharpness.ts';
@@ -23,11 +32,13 @@ import { warnOfCapture, warnOfGreys, warnOfLight, warnOfRegistration } from './w
 export const analysisVersion = '1.0.0';
 
 export interface AnalyseOptions {
-  /** What the photograph shows. Default auto: target when one is found, else scene. */
+  /** What the photograph shows. Default auto: target when one is found, else told from the picture and its Exif. */
   readonly kind?: 'auto' | Kind;
   /** Which of the target's shapes to look for. Default auto. */
   readonly target?: 'auto' | Shape;
   /** Milliseconds from any start; the browser's and Node's performance.now is finer than the default Date.now. */
+  /** Greys of the run's target shot, which lend kinds grey and flat the camera's tone response. Default: the sRGB curve is assumed. */
+  readonly tone?: readonly TonePoint[];
   readonly now?: () => number;
   /** Told how long each stage took, for benchmarks. */
   readonly onStage?: (name: string, milliseconds: number) => void;
@@ -48,12 +59,6 @@ export function analyseFrame(
   options: AnalyseOptions = {},
 ): Analysis {
   const { kind = 'auto', target = 'auto', now = Date.now } = options;
-  if (kind === 'grey' || kind === 'flat' || kind === 'dark') {
-    throw new MeasurementError(
-      'kind-not-supported',
-      `Photographs of kind ${kind} can’t be measured yet. Use kind target, scene or auto.`,
-    );
-  }
   const stage: Stage = (name, work) => {
     const from = now();
     const result = work();
@@ -61,34 +66,39 @@ export function analyseFrame(
     return result;
   };
   const analysePart = (): Part => {
-    if (kind === 'lag') return stage('timing page', () => analyseLag(frame, capture));
-    if (kind === 'ladder') {
+  const start = now();
+  // A frame without anything in it holds no target either.
+  const plain = kind === 'auto' ? stage('kind', () => tellPlain(frame, capture)) : null;
+  const registration =
+    plain || kind === 'lag' || isPlainKind(kind)
+      ? null
+      : stage('registration', () => findTarget(frame, target, kind !== 'target'));
+  const told = kind === 'auto' ? (plain ?? tellOther(frame, capture, registration)) : null;
+  const shown = told?.kind ?? (kind === 'auto' ? 'scene' : kind);
+    if (shown === 'lag') return stage('timing page', () => analyseLag(frame, capture));
+    if (shown === 'ladder') {
       const light = registration && {
         registration,
         ...measureLight(frame, registration, stage),
       };
       return analyseLadder(frame, capture, light);
     }
-    return registration
-      ? analyseTarget(frame, capture, registration, stage)
-      : analyseScene(frame, kind === 'auto');
+    if (isPlainKind(shown)) return analysePlain(shown, frame, capture, options.tone, stage);
+    if (!registration) throw new Error(`kind ${shown} without a registration`);
+    return analyseTarget(frame, capture, registration, stage);
   };
-  const start = now();
-  const registration =
-    kind === 'scene' || kind === 'lag'
-      ? null
-      : stage('registration', () => findTarget(frame, target, kind !== 'target'));
   const registered = now();
   const part = analysePart();
   const end = now();
   return {
     version: analysisVersion,
-    kind: kind === 'auto' ? (registration ? 'target' : 'scene') : kind,
+    kind: shown,
+    ...(told ? { kindConfidence: told.confidence } : {}),
     width: frame.width,
     height: frame.height,
     capture,
     ...part,
-    warnings: [...warnOfCapture(capture), ...part.warnings],
+    warnings: [...warnOfCapture(capture), ...warnOfKind(told), ...part.warnings],
     milliseconds: {
       decode: 0,
       register: registered - start,
@@ -99,6 +109,29 @@ export function analyseFrame(
 }
 
 function findTarget(
+/** The rings stand in one order only and the corners must agree with a lens: no false target is known. */
+const aTarget: ToldKind = { kind: 'target', confidence: 0.99 };
+
+function tellOther(frame: Frame, capture: Capture, registration: Registration | null): ToldKind {
+  return registration ? aTarget : tellKind(frame, capture);
+}
+
+/** Below this it is as well to be told what the picture was taken for. */
+const unsure = 0.7;
+
+function warnOfKind(told: ToldKind | null): Warning[] {
+  if (!told || told.kind === 'target') return [];
+  if (told.kind === 'scene') return [noTarget];
+  return told.confidence < unsure ? [unsureKind(told.kind)] : [];
+}
+
+function unsureKind(kind: Kind): Warning {
+  return {
+    code: 'kind-unsure',
+    message: `The picture was taken for one of kind ${kind}, but not surely. Say what it shows if that is wrong.`,
+  };
+}
+
   frame: Frame,
   target: 'auto' | Shape,
   mayBeAbsent: boolean,
@@ -118,9 +151,14 @@ function analyseTarget(
   stage: Stage,
 ): Part {
   const frameLight = stage('histograms and clipping', () => measureFrame(frame));
-  const { samples, tone, shading } = measureLight(frame, registration, stage);
+  const light = measureLight(frame, registration, stage);
+  const { samples, tone, shading } = light;
   const metrics: Metric[] = [];
-  const warnings: Warning[] = [...warnOfRegistration(frame, registration), ...warnOfGreys(samples)];
+  const warnings: Warning[] = [
+    ...warnOfRegistration(frame, registration),
+    ...warnOfGreys(samples),
+    ...light.warnings,
+  ];
   const plots: Plots = {
     histogram: frameLight.histogram,
     histogramByChannel: frameLight.histogramByChannel,
@@ -165,7 +203,19 @@ function analyseTarget(
     unit: '%',
     uncertainty: registration.distortion.uncertainty,
   });
-  return { registration: registration.summary, metrics, warnings, plots };
+  const doubts = stage('doubts', () => [
+    doubtRegistration(frame, registration),
+    doubtSharpness(metrics),
+    doubtSpots(frame, registration, metrics),
+    doubtCompression(frame),
+    ...(tone ? [] : [doubtTone]),
+  ]);
+  return {
+    registration: registration.summary,
+    metrics: applyDoubts(metrics, doubts),
+    warnings: [...warnings, ...doubts.flatMap((doubt) => doubt.warnings)],
+    plots,
+  };
 }
 
 interface Light {
@@ -173,6 +223,7 @@ interface Light {
   tone: ToneResponse | null;
   shading: ShadingResult;
 }
+  warnings: Warning[];
 
 /**
  * Tone response and shading need each other: a first response, blind to shading, is good enough to tell the shading by,
@@ -182,37 +233,22 @@ function measureLight(frame: Frame, registration: Registration, stage: Stage): L
   const raw = stage('discs', () => sampleDiscs(frame, registration));
   const blind = stage('tone', () => measureTone(frame, raw));
   const rough = stage('shading', () => measureShading(frame, registration, blind?.codeToLight));
-  if (!blind) return { samples: raw, tone: null, shading: rough };
-  const samples = raw.map((s) => ({ ...s, light: rough.correctionAt(s.x, s.y) }));
-  const tone = stage('tone, again', () => measureTone(frame, samples));
-  if (!tone) return { samples, tone: blind, shading: rough };
+  if (!blind) return { samples: raw, tone: null, shading: rough, warnings: [] };
+  const { samples, warnings, hopeless } = stage('judging discs', () =>
+    judgeDiscs(frame, raw, rough.correctionAt),
+  );
+  const tone = hopeless ? null : stage('tone, again', () => measureTone(frame, samples));
+  if (!tone) return { samples, tone: hopeless ? null : blind, shading: rough, warnings };
   const shading = stage('shading, again', () =>
     measureShading(frame, registration, tone.codeToLight),
   );
-  return { samples, tone, shading };
-}
-
-function analyseScene(frame: Frame, searched: boolean): Part {
-  const frameLight = measureFrame(frame);
-  return {
-    metrics: [measureMedian(frameLight, null), ...measureClipping(frameLight)],
-    warnings: searched ? [noTarget, toneAssumed] : [toneAssumed],
-    plots: {
-      histogram: frameLight.histogram,
-      histogramByChannel: frameLight.histogramByChannel,
-    },
-  };
+  return { samples, tone, shading, warnings };
 }
 
 const noTarget: Warning = {
   code: 'no-target',
   message:
     'No target was found, so this was measured as an ordinary picture. If the target is in it, show all of it, upright or not, in even light.',
-};
-const toneAssumed: Warning = {
-  code: 'tone-assumed',
-  message:
-    'Without the target’s greys, stops are told through the sRGB curve. Photograph the target for the camera’s own tone response.',
 };
 const toneMissing: Warning = {
   code: 'tone-missing',
