@@ -16,9 +16,9 @@ import { sampleDiscs } from './exposure/sample-discs.ts';
 import { measureTone, plotTone, type ToneResponse } from './exposure/tone.ts';
 import { measureShading, type ShadingResult } from './field/measure-shading.ts';
 import type { Capture, Frame } from './image.ts';
-import { measureNoise } from './noise/measure-noise.ts';
 import { analysePlain, isPlainKind } from './kinds/analyse-plain.ts';
 import { type ToldKind, tellKind, tellPlain } from './kinds/tell-kind.ts';
+import { measureNoise } from './noise/measure-noise.ts';
 import { plotDiscs, plotOutline, plotStations } from './plots.ts';
 import type { Analysis, Kind, Metric, Plots, Shape, Warning } from './result.ts';
 import { measureSharpness } from './sharpness/measure-sharpness.ts';
@@ -36,9 +36,9 @@ export interface AnalyseOptions {
   readonly kind?: 'auto' | Kind;
   /** Which of the target's shapes to look for. Default auto. */
   readonly target?: 'auto' | Shape;
-  /** Milliseconds from any start; the browser's and Node's performance.now is finer than the default Date.now. */
   /** Greys of the run's target shot, which lend kinds grey and flat the camera's tone response. Default: the sRGB curve is assumed. */
   readonly tone?: readonly TonePoint[];
+  /** Milliseconds from any start; the browser's and Node's performance.now is finer than the default Date.now. */
   readonly now?: () => number;
   /** Told how long each stage took, for benchmarks. */
   readonly onStage?: (name: string, milliseconds: number) => void;
@@ -65,7 +65,6 @@ export function analyseFrame(
     options.onStage?.(name, now() - from);
     return result;
   };
-  const analysePart = (): Part => {
   const start = now();
   // A frame without anything in it holds no target either.
   const plain = kind === 'auto' ? stage('kind', () => tellPlain(frame, capture)) : null;
@@ -75,6 +74,7 @@ export function analyseFrame(
       : stage('registration', () => findTarget(frame, target, kind !== 'target'));
   const told = kind === 'auto' ? (plain ?? tellOther(frame, capture, registration)) : null;
   const shown = told?.kind ?? (kind === 'auto' ? 'scene' : kind);
+  const analysePart = (): Part => {
     if (shown === 'lag') return stage('timing page', () => analyseLag(frame, capture));
     if (shown === 'ladder') {
       const light = registration && {
@@ -108,7 +108,6 @@ export function analyseFrame(
   };
 }
 
-function findTarget(
 /** The rings stand in one order only and the corners must agree with a lens: no false target is known. */
 const aTarget: ToldKind = { kind: 'target', confidence: 0.99 };
 
@@ -132,6 +131,7 @@ function unsureKind(kind: Kind): Warning {
   };
 }
 
+function findTarget(
   frame: Frame,
   target: 'auto' | Shape,
   mayBeAbsent: boolean,
@@ -222,8 +222,8 @@ interface Light {
   samples: DiscSample[];
   tone: ToneResponse | null;
   shading: ShadingResult;
-}
   warnings: Warning[];
+}
 
 /**
  * Tone response and shading need each other: a first response, blind to shading, is good enough to tell the shading by,
