@@ -153,7 +153,7 @@ function Hairs({
   );
 }
 
-/** The share of a full circle in figures, under its ring or, low in the frame, above it. */
+/** The share of a full circle in figures, under its ring or, in the lower part of the frame, above it. */
 function Shares({
   stations,
   radius,
@@ -167,7 +167,7 @@ function Shares({
   return (
     <g fill="#ffffff" stroke="var(--well)" strokeWidth={6} paintOrder="stroke">
       {stations.map(({ id, x, y, share, weak }) => {
-        const above = y > height * 0.8;
+        const above = y > height * 0.62;
         return (
           <text
             key={id}

@@ -24,7 +24,7 @@ export function Section({
       )}
     >
       <h2>{title}</h2>
-      {lead ? <p className="mt-1.5 max-w-[78ch] text-ink-2">{lead}</p> : null}
+      {lead ? <p className="mt-1.5 max-w-[78ch] text-pretty text-ink-2">{lead}</p> : null}
       <div className="mt-4 max-sm:mt-3">{children}</div>
     </section>
   );

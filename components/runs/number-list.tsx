@@ -10,7 +10,7 @@ export function NumberList({ rules }: { rules: readonly RuleOutcome[] }) {
       {rules.map((rule) => (
         <div
           key={rule.ruleId}
-          className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-3 border-line-2 border-t py-1.5 first:border-0 lg:max-2xl:nth-2:border-0 sm:grid-cols-[minmax(0,1fr)_128px_minmax(0,1fr)]"
+          className="grid grid-cols-[minmax(0,1fr)_auto] items-center gap-x-3 border-line-2 border-t py-1.5 first:border-0 lg:max-2xl:nth-2:border-0 sm:grid-cols-[minmax(0,1fr)_136px_minmax(0,1fr)]"
         >
           <dt className="font-semibold text-[14px] leading-tight">{rule.label}</dt>
           <dd className="whitespace-nowrap text-[14px] tabular-nums">{ruleValue(rule)}</dd>

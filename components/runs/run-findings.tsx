@@ -45,7 +45,7 @@ export function RunFindings({
     analysis && stations.length > 0
       ? framePicture(stations, analysis, peersInTheMiddle(run.results))
       : null;
-  const curves = tellingCurves(analysis?.plots.stations ?? []).map((curve) => ({
+  const curves = tellingCurves(stations).map((curve) => ({
     ...curve,
     label: placeName(curve.id).toLowerCase(),
   }));

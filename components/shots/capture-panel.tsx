@@ -1,7 +1,7 @@
 import type { Capture } from '@/analysis/image';
 import { signedText } from '@/components/pictures/draw';
 import { Panel, PanelHead } from '@/components/ui/panel';
-import { exposureTime } from '@/lib/client/format';
+import { day, exposureTime } from '@/lib/client/format';
 import { gap } from '@/lib/shared/numbers';
 
 const programWords: Record<string, string> = {
@@ -18,7 +18,7 @@ export function CapturePanel({ capture }: { capture: Capture }) {
   const facts: [string, string | null][] = [
     ['Camera', camera === '' ? null : camera],
     ['Serial in the file', capture.serial],
-    ['Taken', capture.takenAt?.replace('T', ', ').replace(/\.\d+$/, '') ?? null],
+    ['Taken', capture.takenAt ? takenWords(capture.takenAt) : null],
     ['Mode', capture.program ? (programWords[capture.program] ?? capture.program) : null],
     ['Flash', capture.flash === null ? null : capture.flash ? 'fired' : 'did not fire'],
     ['Written by', capture.software],
@@ -37,6 +37,12 @@ export function CapturePanel({ capture }: { capture: Capture }) {
       </dl>
     </Panel>
   );
+}
+
+/** "14 Mar 2026, 09:30": the camera's own clock, whose zone the file rarely names. */
+function takenWords(takenAt: string): string {
+  const [date, time] = takenAt.split('T');
+  return date && time ? `${day(`${date}T00:00:00Z`)}, ${time.slice(0, 5)}` : takenAt;
 }
 
 /** "1/125 s at f/5.6, ISO 100, 35 mm, −0.3 EV". */

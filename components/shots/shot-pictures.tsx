@@ -11,6 +11,7 @@ import { Panel, PanelHead } from '@/components/ui/panel';
 import type { ShotDetail } from '@/lib/shared/api';
 import {
   colourFinding,
+  edgeFinding,
   exposureFinding,
   fringeFinding,
   readingsOfShot,
@@ -22,28 +23,40 @@ import { ChannelHistogram } from './channel-histogram';
 export function ShotPictures({ analysis }: { analysis: NonNullable<ShotDetail['analysis']> }) {
   const { plots } = analysis;
   const readings = readingsOfShot(analysis.metrics);
+  const [sharpness, edges, fringes, exposure, colour] = [
+    sharpnessFinding,
+    edgeFinding,
+    fringeFinding,
+    exposureFinding,
+    colourFinding,
+  ].map((finding) => finding(readings));
   const frame = plots.stations?.length ? framePicture(plots.stations, analysis) : null;
   const curves = tellingCurves(plots.stations ?? []).map((curve) => ({
     ...curve,
     label: placeName(curve.id).toLowerCase(),
   }));
   return (
-    <div className="grid items-start gap-3.5 md:grid-cols-2 2xl:grid-cols-3">
+    <div className="gap-3.5 md:columns-2 2xl:columns-3">
       {frame ? (
-        <Shown title={sharpnessFinding(readings)?.title ?? 'Sharpness over the frame'}>
+        <Shown title={sharpness?.title ?? 'Sharpness over the frame'} detail={sharpness?.detail}>
           <FrameMap frame={frame} />
+          {fringes ? (
+            <p className="mt-3 text-pretty text-ink-2">
+              <b className="text-ink">{fringes.title}.</b> {fringes.detail}
+            </p>
+          ) : null}
         </Shown>
       ) : null}
       {curves.length > 0 ? (
-        <Shown title={fringeFinding(readings)?.title ?? 'Edges'}>
+        <Shown title={edges?.title ?? 'Edges'} detail={edges?.detail}>
           <MtfCurves curves={curves} />
         </Shown>
       ) : null}
-      <Shown title={exposureFinding(readings)?.title ?? 'Light by channel'}>
+      <Shown title={exposure?.title ?? 'Light by channel'} detail={exposure?.detail}>
         <ChannelHistogram plots={plots} />
       </Shown>
       {plots.colours?.length ? (
-        <Shown title={colourFinding(readings)?.title ?? 'Colours'}>
+        <Shown title={colour?.title ?? 'Colours'} detail={colour?.detail}>
           <AbPlane colours={colourPoints(plots.colours)} />
         </Shown>
       ) : null}
@@ -61,10 +74,19 @@ export function ShotPictures({ analysis }: { analysis: NonNullable<ShotDetail['a
   );
 }
 
-function Shown({ title, children }: { title: string; children: ReactNode }) {
+function Shown({
+  title,
+  detail,
+  children,
+}: {
+  title: string;
+  detail?: string;
+  children: ReactNode;
+}) {
   return (
-    <Panel>
-      <PanelHead title={title} />
+    <Panel className="mb-3.5 break-inside-avoid">
+      <PanelHead title={title} className={detail ? 'mb-1' : undefined} />
+      {detail ? <p className="mb-3 text-pretty text-ink-2">{detail}</p> : null}
       {children}
     </Panel>
   );

@@ -8,6 +8,9 @@ export function numberText(value: number, decimals: number): string {
   return value < 0 && Number(text) !== 0 ? minus + text : text;
 }
 
+/** A second figure of the doubt isn't worth more decimals than this. */
+const finest = 3;
+
 /**
  * As many decimals as the doubt's first figure asks for, so that no digit is shown that nothing stands behind.
  * Where that figure is a 1 the next one is kept too: rounding it away could change the doubt by half (JCGM 100, 7.2.6).
@@ -16,7 +19,8 @@ export function decimalsOf(expanded: number, most: number): number {
   if (expanded <= 0) return most;
   const place = Math.floor(Math.log10(expanded));
   const leading = Math.round(expanded / 10 ** place);
-  return Math.min(most, Math.max(0, leading === 1 ? 1 - place : -place));
+  const kept = leading === 1 && -place < finest ? 1 - place : -place;
+  return Math.min(most, Math.max(0, kept));
 }
 
 const unitWords: Record<string, string> = { '1': '', deg: '°', ΔE00: 'ΔE' };

@@ -208,6 +208,14 @@ export const goodFirst: readonly TopicId[] = [
   'shift',
 ];
 
+/** Worth knowing of a good camera too: said as weak with less room inside A's limits than this; all others with `near`. */
+export const worthKnowing: Partial<Record<TopicId, number>> = {
+  light: 0.6,
+  geometry: 0.6,
+  fringes: 0.6,
+};
+export const near = 0.35;
+
 /** A good thing isn't said beside a weakness that a reader would take for its opposite. */
 export const unsaidBeside: Partial<Record<TopicId, readonly TopicId[]>> = {
   corners: ['evenness', 'sharpness'],

@@ -9,11 +9,13 @@ import {
   goodFirst,
   headlines,
   type Line,
+  near,
   openings,
   type TopicId,
   type TopicWords,
   topics,
   unsaidBeside,
+  worthKnowing,
 } from './report-topics';
 import type { Letter, Standing } from './words';
 
@@ -31,8 +33,6 @@ export interface WordFacts {
 export type ReportWords = Pick<ReportContent, 'headline' | 'summary' | 'good' | 'weak'>;
 
 const mostPoints = 3;
-/** A good result with less room than this is still worth knowing about. */
-const near = 0.35;
 const risk = 0.05;
 
 interface Told {
@@ -51,7 +51,7 @@ interface Told {
 export function reportWords(facts: WordFacts): ReportWords {
   const told = topicsTold(facts.rules);
   const weak = told
-    .filter((one) => one.standing !== 'within' || one.room < near)
+    .filter((one) => one.standing !== 'within' || one.room < (worthKnowing[one.id] ?? near))
     .slice(0, mostPoints);
   const weakIds = new Set(weak.map(({ id }) => id));
   const good = told

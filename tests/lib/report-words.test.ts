@@ -237,6 +237,14 @@ test('a soft corner is never called sharp in the same breath, and nothing is nou
   expect(good[1]?.text).toContain(`less than 0.01\u00a0EV`);
 });
 
+test('dark corners and bowed lines are told of a good camera too, as within', () => {
+  const { weak } = wordsOf({ 'shading.corner': -0.45, 'distortion.corner': -1.45 });
+  expect(weak.map(({ title, standing }) => [title, standing])).toEqual([
+    ['Dark corners.', 'within'],
+    ['Lines bow outward.', 'within'],
+  ]);
+});
+
 test('every topic has its rank among the good', () => {
   expect(goodFirst.toSorted()).toEqual(Object.keys(topics).toSorted());
 });
