@@ -110,7 +110,7 @@ function withoutApart(shots: readonly SeenShot[], warnings: Warning[]): SeenShot
  */
 function shadingDoubt({ greys }: SeenShot): number {
   const top = Math.max(...greys.map(({ light }) => light));
-  return top < 2 * background ? 0.008 : 0.004;
+  return top < 2 * background ? 0.007 : 0.002;
 }
 
 /** Repeats of one setting are one rung. */
