@@ -3,7 +3,7 @@ import { placeName } from '@/components/pictures/draw';
 import { Panel, PanelHead } from '@/components/ui/panel';
 import type { ShotDetail } from '@/lib/shared/api';
 
-/** Pieces of the picture, one of its pixels to one of the screen's. */
+/** Pieces of the picture, one of its pixels to one of the screen's; each opens alone, so that keys reach a row that scrolls. */
 export function Crops({ crops }: { crops: NonNullable<ShotDetail['analysis']>['crops'] }) {
   // A station's circle differs by a pixel or two from place to place; the wells don't.
   const side = {
@@ -16,8 +16,9 @@ export function Crops({ crops }: { crops: NonNullable<ShotDetail['analysis']>['c
       <ul className="flex gap-3 max-sm:overflow-x-auto sm:flex-wrap">
         {crops.map((crop) => (
           <li key={crop.station} className="shrink-0 sm:max-w-full">
-            <span
-              className="grid place-content-center overflow-hidden rounded-well bg-well"
+            <a
+              href={crop.url}
+              className="grid place-content-center overflow-hidden rounded-well bg-well focus-visible:rounded-well"
               style={side}
             >
               <Image
@@ -28,7 +29,7 @@ export function Crops({ crops }: { crops: NonNullable<ShotDetail['analysis']>['c
                 unoptimized
                 className="max-w-none [image-rendering:pixelated]"
               />
-            </span>
+            </a>
             <span className="label mt-1 block">{placeName(crop.station)}</span>
           </li>
         ))}
