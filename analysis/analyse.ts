@@ -13,6 +13,7 @@ import type { TonePoint } from './exposure/lent-tone.ts';
 import { measureClipping, measureExposure, measureMedian } from './exposure/measure-exposure.ts';
 import { measureFrame } from './exposure/measure-frame.ts';
 import { sampleDiscs } from './exposure/sample-discs.ts';
+import { samplePlateaus } from './exposure/sample-plateaus.ts';
 import { measureTone, plotTone, type ToneResponse } from './exposure/tone.ts';
 import { measureShading, type ShadingResult } from './field/measure-shading.ts';
 import type { Capture, Frame } from './image.ts';
@@ -237,7 +238,11 @@ function measureLight(frame: Frame, registration: Registration, stage: Stage): L
   const { samples, warnings, hopeless } = stage('judging discs', () =>
     judgeDiscs(frame, raw, rough.correctionAt),
   );
-  const tone = hopeless ? null : stage('tone, again', () => measureTone(frame, samples));
+  const plateaus = stage('plateaus', () => samplePlateaus(frame, registration)).map((plateau) => ({
+    ...plateau,
+    light: rough.correctionAt(plateau.x, plateau.y),
+  }));
+  const tone = hopeless ? null : stage('tone, again', () => measureTone(frame, samples, plateaus));
   if (!tone) return { samples, tone: hopeless ? null : blind, shading: rough, warnings };
   const shading = stage('shading, again', () =>
     measureShading(frame, registration, tone.codeToLight),

@@ -12,12 +12,22 @@ export interface FringeResult {
   readonly blue: ReadonlyMap<string, Point>;
 }
 
+interface CompressionDoubt {
+  readonly ofValue: number;
+  /** px. */
+  readonly always: number;
+}
+
 /** What averaging over pixels doesn't lessen, px. Found on rendered scenes without compression. */
 const floor = 0.004;
 /** Share of a displacement that compression swallows or adds: it drops faint colour beside an edge. Found on rendered scenes. */
-const swallowed = { full: 0.035, halved: 0.06 };
+const swallowed = { full: 0.012, halved: 0.035 };
+/** What compression leaves in a displacement of any size and shares out among stations alike, px. Found on rendered scenes. */
+const shared = { full: 0.016, halved: 0.055 };
 /** Scatter of the stations, px, at which compression is taken to swallow that share; without compression there is none. */
 const fullScatter = 0.015;
+/** Step of a block's mean colour, codes, at which it does the same. */
+const fullStep = 0.25;
 /** How far a lens's displacement may depart from a smooth field at one station, px. Our choice. */
 const roughness = 0.04;
 /** Fewest stations that a smooth field is drawn through. */
@@ -37,7 +47,9 @@ export function measureFringes(
   traces: Traces,
   chromaHalved: boolean,
 ): FringeResult {
-  const share = chromaHalved ? swallowed.halved : swallowed.full;
+  const share = chromaHalved
+    ? { ofValue: swallowed.halved, always: shared.halved }
+    : { ofValue: swallowed.full, always: shared.full };
   const rawRed = displacements(registration, traces, 'red', chromaHalved);
   const rawBlue = displacements(registration, traces, 'blue', chromaHalved);
   const red = settle(frame, rawRed, share);
@@ -100,33 +112,44 @@ function combineEdges(
 }
 
 /** Adds the scatter that compression causes to each station's doubt, and draws the station toward the smooth field by it. */
-function settle(frame: Frame, displaced: readonly Displaced[], share: number): Displaced[] {
+function settle(
+  frame: Frame,
+  displaced: readonly Displaced[],
+  share: CompressionDoubt,
+): Displaced[] {
   const fit =
     displaced.length < fewestStations
       ? null
       : fitField(displaced, middleOf(frame), reachOf(frame), true);
   return displaced.map((d) => {
     if (!fit) {
-      const swallow = share ** 2;
       const [xx, xy, yy] = d.covariance;
-      return { ...d, covariance: [xx + swallow * d.x ** 2, xy, yy + swallow * d.y ** 2] };
+      const by = (value: number) => compressionDoubt(share, 1, value) ** 2;
+      return { ...d, covariance: [xx + by(d.x), xy, yy + by(d.y)] };
     }
-    const swallow = (share * compression(fit)) ** 2;
+    const compressed = compression(frame, fit);
+    const by = (value: number) => compressionDoubt(share, compressed, value) ** 2;
     const field = fieldAt(fit, d.at);
     const prior = roughness ** 2 + fieldVariance(fit, d.at);
     const vx = d.covariance[0] + fit.extraVariance;
     const vy = d.covariance[2] + fit.extraVariance;
     const x = field.x + ((d.x - field.x) * prior) / (prior + vx);
     const y = field.y + ((d.y - field.y) * prior) / (prior + vy);
-    const xx = (vx * prior) / (prior + vx) + swallow * x * x;
-    const yy = (vy * prior) / (prior + vy) + swallow * y * y;
+    const xx = (vx * prior) / (prior + vx) + by(x);
+    const yy = (vy * prior) / (prior + vy) + by(y);
     return { ...d, x, y, covariance: [xx, d.covariance[1], yy] };
   });
 }
 
-/** 0 … 1: how far the stations' scatter speaks of lossy compression. */
-function compression(fit: FieldFit): number {
-  return Math.min(1, Math.sqrt(fit.extraVariance) / fullScatter);
+/** px. */
+function compressionDoubt(share: CompressionDoubt, compressed: number, value: number): number {
+  return compressed * Math.hypot(share.always, share.ofValue * value);
+}
+
+/** 0 … 1: how coarsely the file rounds its colour, or how far the stations' scatter speaks of compression before this file. */
+function compression(frame: Frame, fit: FieldFit): number {
+  const stated = (frame.blockStep?.chroma ?? 0) / fullStep;
+  return Math.min(1, Math.max(stated, Math.sqrt(fit.extraVariance) / fullScatter));
 }
 
 function middleOf(frame: Frame): Point {
@@ -175,7 +198,7 @@ function fieldMetrics(
   frame: Frame,
   red: readonly Displaced[],
   blue: readonly Displaced[],
-  share: number,
+  share: CompressionDoubt,
 ): Metric[] {
   const metrics: Metric[] = [];
   const shifts: { value: number; uncertainty: number }[] = [];
@@ -186,13 +209,20 @@ function fieldMetrics(
     const fit = fitField(displaced, middleOf(frame), reachOf(frame), false);
     if (!fit) continue;
     const { coefficients, covariance } = fit;
-    const swallow = share * compression(fit);
+    const compressed = compression(frame, fit);
+    const reach = reachOf(frame);
     const value = 1000 * coefficients[2]!;
     const noise = 1000 * Math.sqrt(covariance[8]!);
-    const uncertainty = Math.hypot(noise, scaleFloor, swallow * value);
+    // At the frame's corners the magnification's doubt is that of a displacement.
+    const doubtAt = compressionDoubt(share, compressed, coefficients[2]! * reach);
+    const uncertainty = Math.hypot(noise, scaleFloor, (1000 * doubtAt) / reach);
     metrics.push({ name, value, unit: '‰', uncertainty });
     const shift = Math.hypot(coefficients[0]!, coefficients[1]!);
-    const doubt = Math.hypot(Math.sqrt(covariance[0]!), floor, swallow * shift);
+    const doubt = Math.hypot(
+      Math.sqrt(covariance[0]!),
+      floor,
+      compressionDoubt(share, compressed, shift),
+    );
     shifts.push({ value: shift, uncertainty: doubt });
   }
   const largest = shifts.toSorted((a, b) => b.value - a.value)[0];

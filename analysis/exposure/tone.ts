@@ -5,6 +5,7 @@ import type { Frame } from '../image.ts';
 import type { Plots } from '../result.ts';
 import { type FitPoint, type LocalFit, localFit } from './local-fit.ts';
 import { monotoneCurve } from './monotone-curve.ts';
+import type { Plateau } from './sample-plateaus.ts';
 import { smoothingSpline } from './smoothing-spline.ts';
 
 /**
@@ -40,18 +41,34 @@ const floorStops = 0.001;
 /** Part of a JPEG's rounding in red and blue that neighbouring greys share. Found by rendering. */
 const sharedRounding = 0.4;
 
+/** A plateau and the light at its station against the frame's centre. */
+export interface LitPlateau extends Plateau {
+  readonly light: number;
+}
+
+/** What a station's light, a print's evenness and a JPEG's rounding leave in a plateau, stops. Found by rendering. */
+const plateauStops = 0.006;
+
 /**
- * @param samples all discs; the greys among them that are unclipped are used
+ * @param samples    all discs; the greys among them that are unclipped are used
+ * @param plateaus   pads and squares: they pin the channels' tables where the edges are
  * @returns null with fewer than four usable greys
  */
-export function measureTone(frame: Frame, samples: readonly DiscSample[]): ToneResponse | null {
+export function measureTone(
+  frame: Frame,
+  samples: readonly DiscSample[],
+  plateaus: readonly LitPlateau[] = [],
+): ToneResponse | null {
   const greys = usableGreys(samples);
   if (greys.length < fewestGreys) return null;
   const luminances = toPoints(greys, (s) => [s.luminance, s.luminanceUncertainty]);
   const mid = [0, 1, 2].map((channel) => midGreyOf(frame, greys, channel));
   const curve = responseCurve(luminances);
   const channels = [0, 1, 2].map((channel) =>
-    responseCurve(toPoints(greys, (s) => [s.linear[channel]!, s.uncertainty[channel]!])),
+    responseCurve([
+      ...toPoints(greys, (s) => [s.linear[channel]!, s.uncertainty[channel]!]),
+      ...plateauPoints(plateaus, channel),
+    ]),
   );
   const slope = contrastOf(greys);
   if (!curve || !slope || mid.some((m) => !m) || channels.some((c) => !c)) return null;
@@ -109,6 +126,14 @@ function toPoints(
       sigma: Math.hypot(uncertainty / value / Math.LN2, floorStops),
     };
   });
+}
+
+function plateauPoints(plateaus: readonly LitPlateau[], channel: number): FitPoint[] {
+  return plateaus.map(({ reflectance, light, linear, uncertainty }) => ({
+    x: Math.log2(linear[channel]!),
+    y: Math.log2(reflectance * light),
+    sigma: Math.hypot(uncertainty[channel]! / linear[channel]! / Math.LN2, plateauStops),
+  }));
 }
 
 /** Knots of the table that a spline is turned into: close enough that straight pieces would do. */

@@ -120,7 +120,9 @@ export function readDirection(
   if (!fit) return 'noise';
   const read = crossing(fit, 0.5);
   if (!read || read.uncertainty > mostDoubt * read.value) return 'noise';
-  const mtf50 = whole ? widened(read, unmixingDoubt(edges, whole.shifts, read.value)) : read;
+  const steps = compressionDoubt(frame, fit, read.value);
+  const mixing = whole ? unmixingDoubt(edges, whole.shifts, read.value) : 0;
+  const mtf50 = widened(read, Math.hypot(steps, mixing));
   return { fit, sharpness: sharpnessOf(fit, edge, mtf50, frame.blockStep !== undefined) };
 }
 
@@ -140,6 +142,19 @@ function unmixingDoubt(edges: readonly EdgeTrace[], shifts: ChannelShifts, mtf50
   const spread = Math.sqrt(spreadOfShifts(edges, shifts));
   const doubt = spread * Math.hypot(shiftDoubt.floor, shiftDoubt.share * spread);
   return 0.72 * mtf50 * (2 * Math.PI * mtf50) ** 2 * doubt;
+}
+
+/** Share of mtf50 at 0.26 cy/px that a JPEG's rounding to one code takes or adds, and how it grows. Found on rendered scenes. */
+const roundingDoubt = { share: 0.036, byStep: 0.7, byFrequency: 1.5 };
+/** Noise over the edge's step at which it dithers half of that rounding, so that it shows as noise instead. Found likewise. */
+const dithering = 0.03;
+
+/** A JPEG rounds to the same steps all along an edge; the finer the detail, the coarser the steps. */
+function compressionDoubt({ blockStep }: Frame, { noise }: ProfileFit, mtf50: number): number {
+  if (!blockStep) return 0;
+  const { share, byStep, byFrequency } = roundingDoubt;
+  const left = 1 / (1 + (noise / dithering) ** 2);
+  return mtf50 * share * left * blockStep.luma ** byStep * (mtf50 / 0.26) ** byFrequency;
 }
 
 /** Doubt above which a sharpness is not worth showing. Our choice. */
