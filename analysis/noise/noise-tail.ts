@@ -2,7 +2,7 @@ import type { Frame } from '../image.ts';
 import { type DarkStatistics, tile } from './dark-statistics.ts';
 
 /** Expected number of pixels that noise alone lifts over the threshold, the frame over. Our choice. */
-export const invented = 0.02;
+export const invented = 0.004;
 /** Share of zeros from which the deviation says nothing of the noise. */
 const mostlyBlack = 0.9;
 /** Codes of 255 that count when black is cut away so that little noise is seen. */
