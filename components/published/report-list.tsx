@@ -43,12 +43,12 @@ export function ReportList({ first, mayWithdraw }: { first: ReportRow[]; mayWith
               <Link
                 href={`/r/${report.slug}`}
                 data-row
-                className="font-semibold underline decoration-line underline-offset-3 hover:decoration-current"
+                className="inline-block min-h-6 py-0.5 font-semibold underline decoration-line underline-offset-3 hover:decoration-current"
               >
                 {report.maker} {report.model}
               </Link>
               <span className="block">
-                <Link href={`/units/${report.tag}`} className="no-underline">
+                <Link href={`/units/${report.tag}`} className="inline-block min-h-6 no-underline">
                   <Tag className="text-ink-2">{report.tag}</Tag>
                 </Link>
               </span>
