@@ -1,9 +1,12 @@
 'use client';
 
-import { setNonce } from 'get-nonce';
+import { getNonce, setNonce } from 'get-nonce';
 
-/** Radix writes a style element when a dialog opens; the policy lets it only with the page's nonce. */
+/**
+ * Radix writes a style element when a dialog opens; the policy lets it only with the document's nonce. A refresh brings
+ * the nonce of its own answer, which the document's policy doesn't know: the first one holds.
+ */
 export function StyleNonce({ nonce }: { nonce: string | undefined }) {
-  if (nonce) setNonce(nonce);
+  if (nonce && typeof window !== 'undefined' && !getNonce()) setNonce(nonce);
   return null;
 }
