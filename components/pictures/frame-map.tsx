@@ -13,16 +13,19 @@ const drawnWidth = 1200;
 export function FrameMap({
   frame,
   table = true,
+  longest = frame,
   className,
 }: {
   frame: FramePicture;
   table?: boolean;
+  /** The picture whose hairs set the factor, where two stand side by side; else its own. */
+  longest?: FramePicture;
   className?: string;
 }) {
   const scale = drawnWidth / frame.width;
   const height = round(frame.height * scale);
   const radius = ringRadius(frame) * scale;
-  const factor = hairFactor(frame, (radius * 0.92) / scale);
+  const factor = hairFactor(longest, (radius * 0.92) / scale);
   const placed = frame.stations.map((station) => ({
     ...station,
     x: round(station.x * scale),

@@ -1,5 +1,5 @@
 import Link from 'next/link';
-import { framePicture } from '@/components/pictures/frame-data';
+import { framePicture, lengthOf } from '@/components/pictures/frame-data';
 import { FrameMap } from '@/components/pictures/frame-map';
 import { Tag } from '@/components/ui/chip';
 import { PageHead, Panel, PanelHead } from '@/components/ui/panel';
@@ -8,6 +8,7 @@ import type { RunDetail, ShotDetail } from '@/lib/shared/api';
 import { type Change, changeHeadline, changes } from '@/lib/shared/compare';
 import { readingsOfRun, sharpnessFinding } from '@/lib/shared/findings';
 import { withDoubt } from '@/lib/shared/numbers';
+import type { FramePicture } from '@/lib/shared/report';
 import { ruleValue } from './number-list';
 import { withRunSharpness } from './run-pictures';
 
@@ -37,8 +38,8 @@ export function CompareView({ before, after }: { before: Side; after: Side }) {
         title={changeHeadline(all)}
       />
       <div className="grid items-start gap-3.5 lg:grid-cols-2">
-        <Frame side={before} when="before" />
-        <Frame side={after} when="after" />
+        <Frame side={before} other={after} when="before" />
+        <Frame side={after} other={before} when="after" />
       </div>
       <Panel aria-label="Changes">
         <PanelHead title="What changed" aside="a difference counts when it exceeds its doubt" />
@@ -48,11 +49,23 @@ export function CompareView({ before, after }: { before: Side; after: Side }) {
   );
 }
 
-function Frame({ side: { run, shot }, when }: { side: Side; when: 'before' | 'after' }) {
-  const readings = readingsOfRun(run.results);
+function frameOf({ run, shot }: Side): FramePicture | null {
   const analysis = shot?.analysis ?? null;
-  const stations = withRunSharpness(analysis?.plots.stations ?? [], readings);
-  const frame = analysis && stations.length > 0 ? framePicture(stations, analysis) : null;
+  const stations = withRunSharpness(analysis?.plots.stations ?? [], readingsOfRun(run.results));
+  return analysis && stations.length > 0 ? framePicture(stations, analysis) : null;
+}
+
+/** Of two pictures the one with the longest hair: both are drawn by the factor that suits it. */
+function longerOf(a: FramePicture, b: FramePicture | null): FramePicture {
+  const reach = ({ stations }: FramePicture) =>
+    Math.max(0, ...stations.flatMap(({ red, blue }) => [lengthOf(red), lengthOf(blue)]));
+  return b && reach(b) > reach(a) ? b : a;
+}
+
+function Frame({ side, other, when }: { side: Side; other: Side; when: 'before' | 'after' }) {
+  const { run } = side;
+  const readings = readingsOfRun(run.results);
+  const frame = frameOf(side);
   return (
     <Panel aria-label={when === 'before' ? 'Before' : 'After'}>
       <p className="label mb-1">
@@ -66,7 +79,11 @@ function Frame({ side: { run, shot }, when }: { side: Side; when: 'before' | 'af
         , {run.done === 1 ? 'one shot' : `${run.done} shots`}
       </p>
       <PanelHead title={sharpnessFinding(readings)?.title ?? 'Sharpness over the frame'} />
-      {frame ? <FrameMap frame={frame} /> : <p className="text-ink-2">Nothing to draw.</p>}
+      {frame ? (
+        <FrameMap frame={frame} longest={longerOf(frame, frameOf(other))} />
+      ) : (
+        <p className="text-ink-2">Nothing to draw.</p>
+      )}
     </Panel>
   );
 }
@@ -77,6 +94,11 @@ const words: Record<Change['verdict'], string> = {
   worse: 'worse',
   same: 'no difference beyond the doubt',
 };
+
+function changeText({ by, expanded, rule }: Change): string {
+  const text = withDoubt(by, expanded, rule.unit);
+  return by > 0 && Number.parseFloat(text) > 0 ? `+${text}` : text;
+}
 
 function ChangeTable({ all }: { all: readonly Change[] }) {
   if (all.length === 0)
@@ -100,10 +122,7 @@ function ChangeTable({ all }: { all: readonly Change[] }) {
             <Td className="font-semibold">{change.rule.label}</Td>
             <Td className={`${figures} whitespace-nowrap`}>{ruleValue(change.earlier)}</Td>
             <Td className={`${figures} whitespace-nowrap`}>{ruleValue(change.rule)}</Td>
-            <Td className={`${figures} whitespace-nowrap`}>
-              {change.by > 0 ? '+' : ''}
-              {withDoubt(change.by, change.expanded, change.rule.unit)}
-            </Td>
+            <Td className={`${figures} whitespace-nowrap`}>{changeText(change)}</Td>
             <Td className={change.verdict === 'same' ? 'text-ink-2' : 'font-semibold'}>
               <span
                 aria-hidden="true"
