@@ -6,7 +6,7 @@ import { doubtCompression } from './doubt/doubt-file.ts';
 import { doubtRegistration } from './doubt/doubt-registration.ts';
 import { doubtSharpness } from './doubt/doubt-sharpness.ts';
 import { doubtSpots } from './doubt/doubt-spots.ts';
-import { doubtTone, judgeDiscs } from './doubt/judge-discs.ts';
+import { doubtLight, judgeDiscs } from './doubt/judge-discs.ts';
 import { traceEdges } from './edge/trace-edges.ts';
 import { MeasurementError } from './errors.ts';
 import type { TonePoint } from './exposure/lent-tone.ts';
@@ -209,7 +209,7 @@ function analyseTarget(
     doubtSharpness(metrics),
     doubtSpots(frame, registration, metrics),
     doubtCompression(frame),
-    ...(tone ? [] : [doubtTone]),
+    doubtLight(samples, tone !== null, shading.metrics),
   ]);
   return {
     registration: registration.summary,

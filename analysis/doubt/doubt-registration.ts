@@ -8,6 +8,10 @@ const nearGrid = 1;
 /** Root mean square distance of the squares' corners from the lens's model, target units, beyond which the print isn't flat. Our choice. */
 const muchBent = 0.6;
 
+/** Target 700 px high, as in warnings.ts: below, edges are so short that what averages out elsewhere doesn't. Found on rendered scenes. */
+const fewPixelsPerUnit = 0.78;
+const shortEdges = 0.015;
+
 /** Stations that could not be used, a print that isn't flat, and edges that run along the pixel grid. */
 export function doubtRegistration(frame: Frame, registration: Registration): Doubt {
   const warnings = [
@@ -15,7 +19,11 @@ export function doubtRegistration(frame: Frame, registration: Registration): Dou
     ...warnOfFlatness(registration),
     ...warnOfAngle(registration),
   ];
-  return warnings.length > 0 ? { warnings, withdrawn: [] } : noDoubt;
+  const [a, b, c, d] = registration.jacobian(0, 0);
+  const small = Math.sqrt(Math.abs(a * d - b * c)) < fewPixelsPerUnit;
+  if (warnings.length === 0 && !small) return noDoubt;
+  const widened = small ? [{ name: 'sharpness.', relative: shortEdges }] : [];
+  return { warnings, withdrawn: [], widened };
 }
 
 /** Squares inside the frame whose corners were not found, or not where the others put them. */

@@ -62,26 +62,30 @@ function readPlanes(frame: Frame, left: number, top: number, side: number): Spot
   const { data, width, height, maxCode, toLinear } = frame;
   if (left < 0 || top < 0 || left + side > width || top + side > height) return null;
   const low = maxCode / 255;
-  const planes = [0, 1, 2].map(() => new Float64Array(side * side));
-  const codes = new Float64Array(side * side);
-  for (let i = 0; i < side * side; i++) {
-    const at = ((top + Math.floor(i / side)) * width + left + (i % side)) * 3;
-    for (let channel = 0; channel < 3; channel++) {
-      const code = data[at + channel]!;
-      if (code <= low || code >= maxCode - low) return null;
-      planes[channel]![i] = toLinear[channel]![code]!;
+  const high = maxCode - low;
+  const [redLight, greenLight, blueLight] = toLinear;
+  const plane = () => new Float64Array(side * side);
+  const [red, green, blue, codes] = [plane(), plane(), plane(), plane()];
+  let i = 0;
+  for (let row = top; row < top + side; row++)
+    for (let col = left; col < left + side; col++) {
+      const at = (row * width + col) * 3;
+      const r = data[at]!;
+      const g = data[at + 1]!;
+      const b = data[at + 2]!;
+      if (Math.min(r, g, b) <= low || Math.max(r, g, b) >= high) return null;
+      red[i] = redLight[r]!;
+      green[i] = greenLight[g]!;
+      blue[i] = blueLight[b]!;
+      codes[i] = g;
+      i++;
     }
-    codes[i] = data[at + 1]!;
-  }
-  for (const plane of planes) flatten(plane, side, mean(plane));
+  for (const channel of [red, green, blue]) flatten(channel, side, mean(channel));
   flatten(codes, side, 1);
-  const [red, green, blue] = planes as [Float64Array, Float64Array, Float64Array];
-  return {
-    red,
-    blue,
-    luminance: green.map((g, i) => 0.2126 * red[i]! + 0.7152 * g + 0.0722 * blue[i]!),
-    sigmaCode: Math.sqrt(mean(codes.map((v) => v * v))),
-  };
+  const luminance = plane();
+  for (let k = 0; k < luminance.length; k++)
+    luminance[k] = 0.2126 * red[k]! + 0.7152 * green[k]! + 0.0722 * blue[k]!;
+  return { red, blue, luminance, sigmaCode: Math.sqrt(meanSquare(codes)) };
 }
 
 /** Subtracts the plane of least squares and divides by `unit`. */
@@ -91,22 +95,25 @@ function flatten(plane: Float64Array, side: number, unit: number): void {
   const average = mean(plane);
   let sx = 0;
   let sy = 0;
-  for (let i = 0; i < plane.length; i++) {
-    sx += plane[i]! * ((i % side) - middle);
-    sy += plane[i]! * (Math.floor(i / side) - middle);
-  }
-  for (let i = 0; i < plane.length; i++) {
-    const x = (i % side) - middle;
-    const y = Math.floor(i / side) - middle;
-    plane[i] = (plane[i]! - average - (sx * x + sy * y) / spread) / unit;
-  }
+  for (let y = 0, i = 0; y < side; y++)
+    for (let x = 0; x < side; x++, i++) {
+      sx += plane[i]! * (x - middle);
+      sy += plane[i]! * (y - middle);
+    }
+  const perColumn = sx / spread;
+  const perRow = sy / spread;
+  for (let y = 0, i = 0; y < side; y++)
+    for (let x = 0; x < side; x++, i++) {
+      const level = average + perColumn * (x - middle) + perRow * (y - middle);
+      plane[i] = (plane[i]! - level) / unit;
+    }
 }
 
 function neighbourCorrelation(plane: Float64Array, side: number): number {
   let product = 0;
   let square = 0;
   for (let i = 0; i < plane.length; i++) {
-    square += plane[i]! ** 2;
+    square += plane[i]! * plane[i]!;
     if ((i + 1) % side !== 0) product += plane[i]! * plane[i + 1]!;
   }
   return square > 0 ? (product / square) * (side / (side - 1)) : 1;
@@ -123,17 +130,12 @@ function findPeak(spots: readonly SpotPlanes[], side: number): SpotPattern['peak
   const bins = side * (half + 1);
   const power = new Float64Array(bins);
   const cross = [new Float64Array(bins), new Float64Array(bins)] as const;
+  const share = 1 / (3 * spots.length);
   for (const spot of spots) {
-    const [rr, ri] = transform(spot.red);
-    const [br, bi] = transform(spot.blue);
-    const [yr, yi] = transform(spot.luminance);
-    for (let k = 0; k < bins; k++) {
-      const red = rr[k]! ** 2 + ri[k]! ** 2;
-      const blue = br[k]! ** 2 + bi[k]! ** 2;
-      power[k]! += (red + blue + yr[k]! ** 2 + yi[k]! ** 2) / 3 / spots.length;
-      cross[0][k]! += rr[k]! * br[k]! + ri[k]! * bi[k]!;
-      cross[1][k]! += ri[k]! * br[k]! - rr[k]! * bi[k]!;
-    }
+    const red = transform(spot.red);
+    const blue = transform(spot.blue);
+    const luminance = transform(spot.luminance);
+    addSpectra(power, cross, share, red, blue, luminance);
   }
   const looked = Array.from({ length: bins }, (_, k) => k).filter((k) => mayPeak(k, side));
   const sorted = looked.map((k) => power[k]!).sort((p, q) => p - q);
@@ -150,6 +152,28 @@ function findPeak(spots: readonly SpotPlanes[], side: number): SpotPattern['peak
   };
 }
 
+interface Spectrum {
+  readonly real: Float64Array;
+  readonly imaginary: Float64Array;
+}
+
+function addSpectra(
+  power: Float64Array,
+  [inStep, outOfStep]: readonly [Float64Array, Float64Array],
+  share: number,
+  { real: rr, imaginary: ri }: Spectrum,
+  { real: br, imaginary: bi }: Spectrum,
+  { real: yr, imaginary: yi }: Spectrum,
+): void {
+  for (let k = 0; k < power.length; k++) {
+    const red = rr[k]! * rr[k]! + ri[k]! * ri[k]!;
+    const blue = br[k]! * br[k]! + bi[k]! * bi[k]!;
+    power[k]! += (red + blue + yr[k]! * yr[k]! + yi[k]! * yi[k]!) * share;
+    inStep[k]! += rr[k]! * br[k]! + ri[k]! * bi[k]!;
+    outOfStep[k]! += ri[k]! * br[k]! - rr[k]! * bi[k]!;
+  }
+}
+
 function frequencyOf(k: number, side: number): { fx: number; fy: number } {
   const row = Math.floor(k / (side / 2 + 1));
   return { fx: (k % (side / 2 + 1)) / side, fy: (row > side / 2 ? row - side : row) / side };
@@ -163,53 +187,70 @@ function mayPeak(k: number, side: number): boolean {
   return !(onGrid(fx) && onGrid(fy));
 }
 
-/** Discrete Fourier transform of a windowed square, half plane fx ≥ 0: rows then columns, by tables. */
-function createTransform(side: number, window: Float64Array) {
+/**
+ * Discrete Fourier transform of a windowed square, half plane fx ≥ 0: rows then columns, by tables. Sums against cosine and sine
+ * are the same for a frequency and its negative but for a sign, so that columns are gone through for half of the frequencies.
+ */
+function createTransform(side: number, window: Float64Array): (plane: Float64Array) => Spectrum {
   const half = side / 2 + 1;
-  const cos = Float64Array.from({ length: side }, (_, i) => Math.cos((2 * Math.PI * i) / side));
-  const sin = Float64Array.from({ length: side }, (_, i) => -Math.sin((2 * Math.PI * i) / side));
+  const wave = (of: (turn: number) => number) =>
+    Float64Array.from({ length: half * side }, (_, i) =>
+      of((2 * Math.PI * Math.floor(i / side) * (i % side)) / side),
+    );
+  const cos = wave(Math.cos);
+  const sin = wave((turn) => -Math.sin(turn));
   const row = new Float64Array(side);
+  // Columns one after another, as they are read next.
   const rowReal = new Float64Array(side * half);
   const rowImaginary = new Float64Array(side * half);
-  return (plane: Float64Array): [Float64Array, Float64Array] => {
+  return (plane) => {
     for (let y = 0; y < side; y++) {
       for (let x = 0; x < side; x++) row[x] = plane[y * side + x]! * window[x]! * window[y]!;
       for (let k = 0; k < half; k++) {
-        rowReal[y * half + k] = project(row, cos, k);
-        rowImaginary[y * half + k] = project(row, sin, k);
+        rowReal[k * side + y] = project(row, 0, cos, k, side);
+        rowImaginary[k * side + y] = project(row, 0, sin, k, side);
       }
     }
     const real = new Float64Array(side * half);
     const imaginary = new Float64Array(side * half);
-    const column = { real: new Float64Array(side), imaginary: new Float64Array(side) };
-    for (let k = 0; k < half; k++) {
-      for (let y = 0; y < side; y++) {
-        column.real[y] = rowReal[y * half + k]!;
-        column.imaginary[y] = rowImaginary[y * half + k]!;
+    for (let k = 0; k < half; k++)
+      for (let l = 0; l < half; l++) {
+        const realCos = project(rowReal, k * side, cos, l, side);
+        const realSin = project(rowReal, k * side, sin, l, side);
+        const imaginaryCos = project(rowImaginary, k * side, cos, l, side);
+        const imaginarySin = project(rowImaginary, k * side, sin, l, side);
+        const opposite = ((side - l) % side) * half + k;
+        real[opposite] = realCos + imaginarySin;
+        imaginary[opposite] = imaginaryCos - realSin;
+        real[l * half + k] = realCos - imaginarySin;
+        imaginary[l * half + k] = realSin + imaginaryCos;
       }
-      for (let l = 0; l < side; l++) {
-        real[l * half + k] = project(column.real, cos, l) - project(column.imaginary, sin, l);
-        imaginary[l * half + k] = project(column.real, sin, l) + project(column.imaginary, cos, l);
-      }
-    }
-    return [real, imaginary];
+    return { real, imaginary };
   };
 }
 
-/** Σ value · wave at `frequency` turns a length; the wave's table is as long as the values. */
-function project(values: Float64Array, wave: Float64Array, frequency: number): number {
-  const side = wave.length;
+/** Σ value · wave over `side` values from `from` on; the wave is the table's row `frequency`. */
+function project(
+  values: Float64Array,
+  from: number,
+  wave: Float64Array,
+  frequency: number,
+  side: number,
+): number {
+  const row = frequency * side;
   let sum = 0;
-  for (let i = 0, turn = 0; i < side; i++) {
-    sum += values[i]! * wave[turn]!;
-    turn += frequency;
-    if (turn >= side) turn -= side;
-  }
+  for (let i = 0; i < side; i++) sum += values[from + i]! * wave[row + i]!;
   return sum;
 }
 
 function mean(values: ArrayLike<number>): number {
   let sum = 0;
   for (let i = 0; i < values.length; i++) sum += values[i]!;
+  return sum / values.length;
+}
+
+function meanSquare(values: Float64Array): number {
+  let sum = 0;
+  for (let i = 0; i < values.length; i++) sum += values[i]! * values[i]!;
   return sum / values.length;
 }
