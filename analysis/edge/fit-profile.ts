@@ -46,19 +46,68 @@ export function fitProfile(
   sigma: number,
   copies?: readonly Copies[],
 ): ProfileFit | null {
+  const values = profiles.map((profile) => profile.value);
+  return fitValues(designFit(profiles, sigma, copies), values);
+}
+
+/** All of a fit but the profiles' values, for fits to several sets of values at the same distances. */
+export interface Design {
+  readonly profiles: readonly Profile[];
+  readonly widths: readonly number[];
+  readonly skewWidths: readonly number[];
+  /** Lower triangle of the normal equations: shared spread, then a level and a slope for each profile. */
+  readonly normal: Float64Array;
+  /** Rows of all profiles one after another: shared spread, level and slope. */
+  readonly table: Float64Array;
+  readonly rows: number;
+}
+
+/** For `fitValues`; parameters as for `fitProfile`. */
+export function designFit(
+  profiles: readonly Profile[],
+  sigma: number,
+  copies?: readonly Copies[],
+): Design {
   const widest = Math.max(2.2 * sigma, Math.min(3.6, shortestReach(profiles) / 2));
   const widths = ladder.map((factor) => factor * sigma).filter((width) => width <= widest);
   const skewWidths = skewLadder.map((factor) => factor * sigma);
   const shared = widths.length + skewWidths.length;
+  const columns = shared + 2;
   const n = shared + 2 * profiles.length;
-  const system = assemble(profiles, sigma, widths, skewWidths, copies);
-  if (system.rows < n + 12) return null;
+  const rows = profiles.reduce((sum, { distance }) => sum + distance.length, 0);
+  const normal = new Float64Array(n * n);
+  const table = new Float64Array(rows * columns);
+  const row = new Float64Array(columns);
+  let next = 0;
+  profiles.forEach(({ distance, pixels, floor }, p) => {
+    const block = new Float64Array(columns * columns);
+    for (let i = 0; i < distance.length; i++) {
+      const d = distance[i]!;
+      fillSpread(row, d, sigma, widths, skewWidths, copies?.[p] ?? alone);
+      row[shared] = 1;
+      row[shared + 1] = (d / 10) * (floor + fastNormalCdf(d / sigma));
+      accumulate(block, row, pixels[i]!);
+      table.set(row, next);
+      next += columns;
+    }
+    addBlock(normal, n, block, shared, p);
+  });
+  return { profiles, widths, skewWidths, normal, table, rows };
+}
+
+/** @param values  by profile, in place of its own; @returns null when they hold too little to fit */
+export function fitValues(design: Design, values: readonly Float64Array[]): ProfileFit | null {
+  const { profiles, widths, skewWidths, rows } = design;
+  const shared = widths.length + skewWidths.length;
+  const n = shared + 2 * profiles.length;
+  if (rows < n + 12) return null;
+  const system = { normal: design.normal, ...sumValues(design, values, shared) };
   let noise = 0.02;
   let solved: Solution | null = null;
   for (let pass = 0; pass < 3; pass++) {
     solved = solve(system, n, widths.length, shared, noise);
     if (!solved) return null;
-    noise = Math.max(leastNoise, clumping * Math.sqrt(solved.squares / (system.rows - 0.7 * n)));
+    noise = Math.max(leastNoise, clumping * Math.sqrt(solved.squares / (rows - 0.7 * n)));
   }
   if (!solved) return null;
   const covariance = new Float64Array(shared * shared);
@@ -80,7 +129,6 @@ interface System {
   readonly right: Float64Array;
   /** Σ weight · value². */
   readonly total: number;
-  readonly rows: number;
 }
 
 interface Solution {
@@ -89,35 +137,43 @@ interface Solution {
   readonly squares: number;
 }
 
-/** Normal equations: shared spread, then a level and a slope for each profile. */
-function assemble(
-  profiles: readonly Profile[],
-  sigma: number,
-  widths: readonly number[],
-  skewWidths: readonly number[],
-  copies?: readonly Copies[],
-): System {
-  const shared = widths.length + skewWidths.length;
-  const n = shared + 2 * profiles.length;
-  const normal = new Float64Array(n * n);
-  const right = new Float64Array(n);
-  const row = new Float64Array(n);
+/** What of the normal equations hangs on the values. */
+function sumValues(
+  { profiles, table }: Design,
+  values: readonly Float64Array[],
+  shared: number,
+): { right: Float64Array; total: number } {
+  const columns = shared + 2;
+  const right = new Float64Array(shared + 2 * profiles.length);
   let total = 0;
-  let rows = 0;
-  profiles.forEach((profile, p) => {
-    const { distance, value, pixels, floor } = profile;
-    row.fill(0);
-    for (let i = 0; i < distance.length; i++) {
-      const d = distance[i]!;
-      fillSpread(row, d, sigma, widths, skewWidths, copies?.[p] ?? alone);
-      row[shared + 2 * p] = 1;
-      row[shared + 2 * p + 1] = (d / 10) * (floor + fastNormalCdf(d / sigma));
-      accumulate(normal, right, row, value[i]!, pixels[i]!);
-      total += pixels[i]! * value[i]! ** 2;
-      rows++;
+  let at = 0;
+  profiles.forEach(({ pixels }, p) => {
+    const own = values[p]!;
+    const after = 2 * p;
+    for (let i = 0; i < pixels.length; i++) {
+      const weighted = pixels[i]! * own[i]!;
+      total += weighted * own[i]!;
+      for (let j = 0; j < shared; j++) right[j]! += table[at + j]! * weighted;
+      right[shared + after]! += weighted;
+      right[shared + after + 1]! += table[at + shared + 1]! * weighted;
+      at += columns;
     }
   });
-  return { normal, right, total, rows };
+  return { right, total };
+}
+
+/** A profile's sums to their places among all. */
+function addBlock(
+  normal: Float64Array,
+  n: number,
+  block: Float64Array,
+  shared: number,
+  profile: number,
+): void {
+  const columns = shared + 2;
+  const place = (j: number) => (j < shared ? j : j + 2 * profile);
+  for (let j = 0; j < columns; j++)
+    for (let k = 0; k <= j; k++) normal[place(j) * n + place(k)]! += block[j * columns + k]!;
 }
 
 function fillSpread(
@@ -128,28 +184,25 @@ function fillSpread(
   skewWidths: readonly number[],
   copies: Copies,
 ): void {
-  row.fill(0, 0, widths.length + skewWidths.length);
-  for (const { at, weight } of copies) {
-    let next = 0;
-    for (const width of widths) row[next++]! += weight * fastNormalCdf((d - at) / width);
-    for (const width of skewWidths)
-      row[next++]! += (weight * fastNormalDensity((d - at) / width) * sigma) / width;
+  const gaussians = widths.length;
+  row.fill(0, 0, gaussians + skewWidths.length);
+  for (let copy = 0; copy < copies.length; copy++) {
+    const { at, weight } = copies[copy]!;
+    for (let i = 0; i < gaussians; i++) row[i]! += weight * fastNormalCdf((d - at) / widths[i]!);
+    for (let i = 0; i < skewWidths.length; i++) {
+      const width = skewWidths[i]!;
+      row[gaussians + i]! += (weight * fastNormalDensity((d - at) / width) * sigma) / width;
+    }
   }
 }
 
-function accumulate(
-  normal: Float64Array,
-  right: Float64Array,
-  row: Float64Array,
-  value: number,
-  weight: number,
-): void {
+/** Lower triangle of Σ weight · row · rowᵀ. */
+function accumulate(block: Float64Array, row: Float64Array, weight: number): void {
   const n = row.length;
   for (let j = 0; j < n; j++) {
     const weighted = row[j]! * weight;
     if (weighted === 0) continue;
-    right[j]! += weighted * value;
-    for (let k = 0; k <= j; k++) normal[j * n + k]! += weighted * row[k]!;
+    for (let k = 0; k <= j; k++) block[j * n + k]! += weighted * row[k]!;
   }
 }
 

@@ -185,12 +185,13 @@ function sharpnessOf(
 ): EdgeSharpness {
   const doubt = compressed ? highFrequency.compressed : highFrequency.plain;
   const mtf10 = crossing(fit, 0.1);
+  const rise = riseDistance(fit);
   return {
     edge,
     mtf50: widened(mtf50, systematic * mtf50.value),
     mtf10: mtf10 && widened(mtf10, doubt.mtf10 * mtf10.value),
     nyquist: widened(responsePercent(fit, 0.5), doubt.nyquist),
-    rise: widened(riseDistance(fit), 2 * systematic * riseDistance(fit).value),
+    rise: widened(rise, 2 * systematic * rise.value),
     overshoot: widened(overshootPercent(fit), 0.2),
   };
 }

@@ -1,6 +1,13 @@
-import { type Copies, fitProfile, type ProfileFit, spreadAt } from '../edge/fit-profile.ts';
+import {
+  type Copies,
+  designFit,
+  fitProfile,
+  fitValues,
+  type ProfileFit,
+  spreadAt,
+} from '../edge/fit-profile.ts';
 import type { Luma } from '../edge/luma.ts';
-import type { ChannelTrace, EdgeTrace, Profile } from '../edge/trace-edges.ts';
+import type { ChannelTrace, EdgeTrace } from '../edge/trace-edges.ts';
 import type { Point } from '../image.ts';
 
 /** Displacement of the red and the blue image against the green at a station, px. */
@@ -39,11 +46,13 @@ export function fitUnmixed(
   const copies = edges.map(
     (edge): Copies => alongNormal(edge, shifts).map((at, i) => ({ at, weight: weights[i]! })),
   );
-  let fit = fitProfile(profiles, own, copies);
+  const design = designFit(profiles, own, copies);
+  const values = profiles.map((profile) => profile.value);
+  let fit = fitValues(design, values);
   for (let pass = 0; pass < passes && fit; pass++) {
     const before: ProfileFit = fit;
     const added = edges.map((edge, i) => addedLight(edge, luma, before, copies[i]!));
-    fit = fitProfile(added, own, copies);
+    fit = fitValues(design, added);
   }
   return fit;
 }
@@ -65,19 +74,25 @@ function alongNormal({ normal }: EdgeTrace, { red, blue }: ChannelShifts): numbe
   return [r - mean, -mean, b - mean];
 }
 
-/** The profile as it would be if light were added up in place of codes. */
-function addedLight(edge: LumaEdge, luma: Luma, fit: ProfileFit, copies: Copies): Profile {
+/** The profile's values as they would be if light were added up in place of codes. */
+function addedLight(edge: LumaEdge, luma: Luma, fit: ProfileFit, copies: Copies): Float64Array {
   const { profile, step, sigma } = edge.luma;
+  const { distance, floor } = profile;
+  const [{ at: r, weight: ofRed }, { at: g, weight: ofGreen }, { at: b, weight: ofBlue }] =
+    copies as [Copies[number], Copies[number], Copies[number]];
   // Falling edges are kept upside down, see edge/.
-  const sign = profile.floor < 0 ? -1 : 1;
+  const sign = floor < 0 ? -1 : 1;
+  const scale = sign * step;
   const reach = 5 * sigma + 2;
-  const value = profile.value.map((v, i) => {
-    const d = profile.distance[i]!;
-    if (Math.abs(d) > reach) return v;
-    const spreads = copies.map(({ at }) => spreadAt(fit, d - at));
-    const [red, green, blue] = spreads.map((s) => sign * (profile.floor + s) * step);
-    const coded = (sign * luma.mix(red!, green!, blue!)) / step - profile.floor;
-    return v + spreads.reduce((sum, s, k) => sum + s * copies[k]!.weight, 0) - coded;
-  });
-  return { ...profile, value };
+  const value = profile.value.slice();
+  for (let i = 0; i < value.length; i++) {
+    const d = distance[i]!;
+    if (d > reach || d < -reach) continue;
+    const red = spreadAt(fit, d - r);
+    const green = spreadAt(fit, d - g);
+    const blue = spreadAt(fit, d - b);
+    const mixed = luma.mix(scale * (floor + red), scale * (floor + green), scale * (floor + blue));
+    value[i]! += ofRed * red + ofGreen * green + ofBlue * blue - (mixed / scale - floor);
+  }
+  return value;
 }
