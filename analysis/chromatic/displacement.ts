@@ -1,4 +1,5 @@
-import { binsPerPixel, type ChannelTrace, type EdgeTrace } from '../edge/trace-edges.ts';
+import { binsPerPixel } from '../edge/bin-samples.ts';
+import type { ChannelTrace, EdgeTrace } from '../edge/trace-edges.ts';
 import { fastNormalCdf } from '../numeric/normal.ts';
 import { quadraticForm, solveSpd } from '../numeric/spd.ts';
 

@@ -18,7 +18,8 @@ export interface LineFit {
   shiftUncertainty: number;
 }
 
-const parameters = 6;
+/** Of a whole fit; one that follows another's line has them too. */
+export const parameters = 6;
 const normal = new Float64Array(parameters * parameters);
 const right = new Float64Array(parameters);
 
@@ -31,22 +32,20 @@ const slack = 1;
 const mostReach = 7;
 
 /**
- * Finds the edge in the samples by Gauss–Newton on every pixel near it.
- * @param shape  a fit whose tilt and bend are kept (red, blue and luma follow green's line); absent: all six are free
+ * Finds the edge in the green samples by Gauss–Newton on every pixel near it; fit-bins.ts finds the other channels' along its line.
  * @returns null when the pixels show no rising step
  */
-export function fitLine(samples: Samples, channel: 0 | 1 | 2 | 3, shape?: LineFit): LineFit | null {
-  const light = samples.light[channel];
-  const fit = shape ? { ...shape } : startingFit(samples, light);
+export function fitLine(samples: Samples): LineFit | null {
+  const light = samples.light[1];
+  const fit = startingFit(samples, light);
   if (!fit || !levels(samples, light, fit)) return null;
-  const free = shape === undefined;
   // Most of the way on a thinned set of pixels, the last steps on all of them.
   if (chosen.length < samples.count) chosen = new Int32Array(samples.distance.length);
   const stride = Math.floor(samples.count / thinned);
   if (stride > 1) {
     chooseEvery(stride, samples);
     for (let iteration = 0; iteration < 8; iteration++) {
-      const change = improve(samples, light, fit, free);
+      const change = improve(samples, light, fit);
       if (change === null) return null;
       if (change < 0.02) break;
     }
@@ -57,13 +56,16 @@ export function fitLine(samples: Samples, channel: 0 | 1 | 2 | 3, shape?: LineFi
       chooseNear(samples, fit);
       moved = 0;
     }
-    const change = improve(samples, light, fit, free);
+    const change = improve(samples, light, fit);
     if (change === null) return null;
-    if (change < 0.004) break;
+    if (change < settled) break;
     moved += mostReach * change;
   }
   return fit;
 }
+
+/** A step below this is the last, px. */
+export const settled = 0.004;
 
 /** Pixels that are enough to come near. */
 const thinned = 900;
@@ -122,18 +124,13 @@ function chooseNear({ distance, along, count }: Samples, fit: LineFit): void {
   }
 }
 
-/** Pixels farther away say nothing of where the edge lies, and little of its levels. */
-function nearOf({ sigma }: LineFit): number {
+/** Pixels farther away say nothing of where the edge lies, and little of its levels. px. */
+export function nearOf({ sigma }: LineFit): number {
   return 4 * sigma + 2.5;
 }
 
 /** One Gauss–Newton step on the chosen samples; returns the largest move in px, or null when the step is lost. */
-function improve(
-  samples: Samples,
-  light: Float32Array,
-  fit: LineFit,
-  freeShape: boolean,
-): number | null {
+function improve(samples: Samples, light: Float32Array, fit: LineFit): number | null {
   const { distance, along } = samples;
   const { low, step, sigma, shift, tilt, bend } = fit;
   const near = nearOf(fit);
@@ -183,7 +180,7 @@ function improve(
     e1 += rise * error;
     e2 += widen * error;
     e3 += slope * error;
-    if (freeShape && slope !== 0) addShape(t, rise, widen, slope, error);
+    if (slope !== 0) addShape(t, rise, widen, slope, error);
   }
   normal[0] = used;
   normal[6] = sg;
@@ -199,9 +196,9 @@ function improve(
   right[1] = e1;
   right[2] = e2;
   right[3] = e3;
-  if (used < 24) return null;
+  if (used < fewestUsed) return null;
   fit.residual = Math.sqrt(squares / Math.max(1, used - parameters));
-  steady(used, step, freeShape);
+  steady(used, step);
   if (!solveSpd(normal, right)) return null;
   fit.shiftUncertainty = fit.residual * Math.sqrt(normal[3 * parameters + 3]!);
   return advance(fit);
@@ -228,24 +225,35 @@ function addShape(t: number, rise: number, widen: number, slope: number, error: 
 }
 
 /** Weak pulls that keep a short or noisy edge from running away, far below the weight of a usable one. */
-function steady(used: number, step: number, freeShape: boolean): void {
-  const weak = 1e-5 * used * step * step;
-  normal[2 * parameters + 2]! += weak;
-  for (const j of [4, 5]) normal[j * parameters + j]! += freeShape ? weak : 1;
+function steady(used: number, step: number): void {
+  const weak = weakPull * used * step * step;
+  for (const j of [2, 4, 5]) normal[j * parameters + j]! += weak;
 }
 
+export const weakPull = 1e-5;
+/** Pixels near the edge below which no step is told. */
+export const fewestUsed = 24;
+
 function advance(fit: LineFit): number | null {
-  const limit = (value: number, most: number) => Math.min(most, Math.max(-most, value));
-  fit.low += right[0]!;
-  fit.step += right[1]!;
-  const widen = limit(right[2]!, 0.6 * fit.sigma);
-  fit.sigma = Math.min(6, Math.max(0.15, fit.sigma + widen));
-  const move = limit(right[3]!, 1.5);
+  const moved = moveStep(fit, right);
   const turn = limit(right[4]!, 1.5);
   const curve = limit(right[5]!, 1.5);
-  fit.shift += move;
   fit.tilt += turn;
   fit.bend += curve;
-  if (!(fit.step > 0)) return null;
-  return Math.max(Math.abs(widen), Math.abs(move), Math.abs(turn), Math.abs(curve));
+  return moved === null ? null : Math.max(moved, Math.abs(turn), Math.abs(curve));
+}
+
+/** Moves low, step, sigma and shift by the first four of a solution; returns the largest move in px, or null when the step is lost. */
+export function moveStep(fit: LineFit, solution: Float64Array): number | null {
+  fit.low += solution[0]!;
+  fit.step += solution[1]!;
+  const widen = limit(solution[2]!, 0.6 * fit.sigma);
+  fit.sigma = Math.min(6, Math.max(0.15, fit.sigma + widen));
+  const move = limit(solution[3]!, 1.5);
+  fit.shift += move;
+  return fit.step > 0 ? Math.max(Math.abs(widen), Math.abs(move)) : null;
+}
+
+function limit(value: number, most: number): number {
+  return Math.min(most, Math.max(-most, value));
 }

@@ -1,6 +1,7 @@
 import { fastNormalCdf, fastNormalDensity, normalDensity } from '../numeric/normal.ts';
 import { solveSpd } from '../numeric/spd.ts';
-import { binsPerPixel, type Profile } from './trace-edges.ts';
+import { binsPerPixel } from './bin-samples.ts';
+import type { Profile } from './trace-edges.ts';
 
 /**
  * A line-spread function as a sum of Gaussians and their first derivatives, fitted to one or more edge-spread functions.

@@ -1,17 +1,17 @@
 import type { Frame, Point } from '../image.ts';
 import type { Edge } from '../result.ts';
 import type { Registration } from '../target/registration.ts';
+import { type Bins, binSamples, profileOf } from './bin-samples.ts';
 import {
   collectSamples,
   createSamples,
   type LightTables,
   type Samples,
 } from './collect-samples.ts';
+import { fitBins } from './fit-bins.ts';
 import { fitLine, type LineFit } from './fit-line.ts';
 import { createLuma, type Luma } from './luma.ts';
 import { type PlacedEdge, placeEdges } from './place-edges.ts';
-
-export const binsPerPixel = 8;
 
 /** An edge-spread function in bins of 1/8 px, normalised to 0 and 1 either side; bins without pixels are left out. */
 export interface Profile {
@@ -19,8 +19,6 @@ export interface Profile {
   readonly distance: Float64Array;
   readonly value: Float64Array;
   readonly pixels: Float64Array;
-  /** Number of the bin, counted from `-reach`. */
-  readonly bin: Int32Array;
   readonly reach: number;
   /** Dark level over the step, with the sign of the profile: the slope of uneven light is proportional to it. */
   readonly floor: number;
@@ -114,17 +112,18 @@ export function traceEdge(
   collectSamples(frame, tables, placed, blur, reachOf(blur, least), samples, lumaTable);
   if (samples.count < fewestPixels) return 'small';
   if (samples.clipped > mostClipped) return 'clipped';
-  let green = fitLine(samples, 1);
+  let green = fitLine(samples);
   if (!green) return 'faint';
   if (Math.abs(green.sigma - blur) > 0.25 * blur) {
     blur = green.sigma;
     collectSamples(frame, tables, placed, blur, reachOf(blur, least), samples, lumaTable);
     if (samples.count < fewestPixels) return 'small';
-    green = fitLine(samples, 1);
+    green = fitLine(samples);
   }
   if (!green || green.step < 3 * green.residual) return 'faint';
   const scale = 1 / Math.hypot(1, placed.slope);
   const vertical = placed.edge === 'vertical';
+  const bins = binSamples(samples, green, reachOf(green.sigma, least), lumaTable !== null);
   return {
     station: placed.station,
     edge: placed.edge,
@@ -133,10 +132,10 @@ export function traceEdge(
       ? { x: scale, y: -placed.slope * scale }
       : { x: -placed.slope * scale, y: scale },
     length: placed.length,
-    red: traceChannel(samples, 0, green, least),
-    green: describe(samples, 1, green, least),
-    blue: traceChannel(samples, 2, green, least),
-    luma: lumaTable && traceChannel(samples, 3, green, least),
+    red: traceChannel(bins, 0, green),
+    green: describe(bins, 1, green, 0),
+    blue: traceChannel(bins, 2, green),
+    luma: lumaTable && traceChannel(bins, 3, green),
   };
 }
 
@@ -145,82 +144,15 @@ function reachOf(blur: number, least: number): number {
   return Math.min(24, Math.max(least, 5 * blur + 8));
 }
 
-function traceChannel(
-  samples: Samples,
-  channel: 0 | 2 | 3,
-  green: LineFit,
-  least: number,
-): ChannelTrace | null {
-  const fit = fitLine(samples, channel, green);
+function traceChannel(bins: Bins, channel: 0 | 2 | 3, green: LineFit): ChannelTrace | null {
+  const fit = fitBins(bins, channel, green);
   if (!fit || fit.step < 3 * fit.residual) return null;
-  return describe(samples, channel, fit, least);
+  return describe(bins, channel, fit, fit.shift - green.shift);
 }
 
-function describe(
-  samples: Samples,
-  channel: 0 | 1 | 2 | 3,
-  fit: LineFit,
-  least: number,
-): ChannelTrace {
+/** @param offset  of the channel's edge from green's, px */
+function describe(bins: Bins, channel: 0 | 1 | 2 | 3, fit: LineFit, offset: number): ChannelTrace {
   const { shift, shiftUncertainty, sigma, residual, step } = fit;
-  const profile = binSamples(samples, channel, fit, least);
+  const profile = profileOf(bins, channel, fit, offset);
   return { profile, shift, shiftUncertainty, sigma, residual: residual / step, step };
-}
-
-function binSamples(
-  samples: Samples,
-  channel: 0 | 1 | 2 | 3,
-  fit: LineFit,
-  least: number,
-): Profile {
-  const { distance, along, count } = samples;
-  const light = samples.light[channel];
-  const { low, shift, tilt, bend } = fit;
-  const gain = 1 / fit.step;
-  const reach = reachOf(fit.sigma, least);
-  const bins = Math.ceil(2 * reach * binsPerPixel);
-  const distanceSum = new Float64Array(bins);
-  const lightSum = new Float64Array(bins);
-  const pixels = new Float64Array(bins);
-  for (let i = 0; i < count; i++) {
-    const t = along[i]!;
-    const d = distance[i]! - shift - (tilt + bend * t) * t;
-    const place = (d + reach) * binsPerPixel;
-    if (!(place >= 0 && place < bins)) continue;
-    const bin = place | 0;
-    distanceSum[bin]! += d;
-    lightSum[bin]! += light[i]!;
-    pixels[bin]! += 1;
-  }
-  return packBins(distanceSum, lightSum, pixels, { low, gain, reach });
-}
-
-function packBins(
-  distanceSum: Float64Array,
-  lightSum: Float64Array,
-  pixels: Float64Array,
-  scale: { low: number; gain: number; reach: number },
-): Profile {
-  const { low, gain, reach } = scale;
-  let filled = 0;
-  for (let bin = 0; bin < pixels.length; bin++) if (pixels[bin]! > 0) filled++;
-  const profile = {
-    distance: new Float64Array(filled),
-    value: new Float64Array(filled),
-    pixels: new Float64Array(filled),
-    bin: new Int32Array(filled),
-    reach,
-    floor: low * gain,
-  };
-  let next = 0;
-  for (let bin = 0; bin < pixels.length; bin++) {
-    const n = pixels[bin]!;
-    if (n === 0) continue;
-    profile.distance[next] = distanceSum[bin]! / n;
-    profile.value[next] = (lightSum[bin]! / n - low) * gain;
-    profile.pixels[next] = n;
-    profile.bin[next] = bin;
-    next++;
-  }
-  return profile;
 }

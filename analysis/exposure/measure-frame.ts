@@ -64,17 +64,30 @@ function countClipped(frame: Frame): Clipped {
  */
 function countClippedBytes(data: Uint8Array): Clipped {
   const words = new Int32Array(data.buffer, data.byteOffset, data.length >> 2);
-  const end = words.length - 5;
+  const end = words.length - (words.length % 6);
   const total: Clipped = { highlights: 0, shadows: 0 };
-  let word = 0;
-  for (; word < end; word += 6) {
+  for (let word = 0; word < end; word += strip)
+    countStrip(total, data, words, word, Math.min(end, word + strip));
+  addClipped(total, data, 4 * end, data.length, 255);
+  return total;
+}
+
+/** Words looked at in one call, of which there are then enough for the compiler to take the function on as a whole. */
+const strip = 6 * 4096;
+
+function countStrip(
+  total: Clipped,
+  data: Uint8Array,
+  words: Int32Array,
+  from: number,
+  to: number,
+): void {
+  for (let word = from; word < to; word += 6) {
     const first = spread(words[word]!) & spread(words[word + 1]!) & spread(words[word + 2]!);
     const second = spread(words[word + 3]!) & spread(words[word + 4]!) & spread(words[word + 5]!);
     if ((first & second & topBits) === topBits) continue;
     addClipped(total, data, 4 * word, 4 * word + 24, 255);
   }
-  addClipped(total, data, 4 * word, data.length, 255);
-  return total;
 }
 
 const topBits = 0x80808080 | 0;
@@ -103,39 +116,59 @@ function addClipped(
 }
 
 interface Histograms {
-  luminance: Uint32Array;
-  channels: [Uint32Array, Uint32Array, Uint32Array];
+  luminance: Int32Array;
+  channels: [Int32Array, Int32Array, Int32Array];
   count: number;
 }
 
+type Weighed = readonly [Float32Array, Float32Array, Float32Array];
+
 function sampleHistograms(frame: Frame): Histograms {
-  const { data, maxCode, width, height } = frame;
-  const luminance = new Uint32Array(fine);
-  const channel = () => new Uint32Array(maxCode + 1);
-  const [red, green, blue] = [channel(), channel(), channel()];
+  const { maxCode, width, height } = frame;
+  const channel = () => new Int32Array(maxCode + 1);
+  const histograms: Histograms = {
+    luminance: new Int32Array(fine),
+    channels: [channel(), channel(), channel()],
+    count: 0,
+  };
   const weights = luminanceWeights(frame);
   const weigh = (i: number) =>
     frame.toLinear[i]!.map((linear) => linear * weights[i]! * (fine - 1));
-  const [redLight, greenLight, blueLight] = [weigh(0), weigh(1), weigh(2)];
+  const lights: Weighed = [weigh(0), weigh(1), weigh(2)];
   const { rowStep, colStep } = sampleSteps(width, height);
+  for (let row = rowStep >> 1, n = 0; row < height; row += rowStep, n++) {
+    // Each row begins elsewhere, so that the sample doesn't stand in columns.
+    const from = (row * width + (n % colStep)) * 3;
+    sampleRow(histograms, frame.data, from, (row + 1) * width * 3, 3 * colStep, lights);
+  }
+  return histograms;
+}
+
+/** By itself, because a function that is called often is compiled as a whole. */
+function sampleRow(
+  histograms: Histograms,
+  data: Frame['data'],
+  from: number,
+  to: number,
+  step: number,
+  [redLight, greenLight, blueLight]: Weighed,
+): void {
+  const { luminance, channels } = histograms;
+  const [red, green, blue] = channels;
   const last = fine - 1;
   let count = 0;
-  for (let row = rowStep >> 1, n = 0; row < height; row += rowStep, n++) {
-    const end = (row + 1) * width * 3;
-    // Each row begins elsewhere, so that the sample doesn't stand in columns.
-    for (let i = (row * width + (n % colStep)) * 3; i < end; i += 3 * colStep) {
-      const r = data[i]!;
-      const g = data[i + 1]!;
-      const b = data[i + 2]!;
-      red[r]!++;
-      green[g]!++;
-      blue[b]!++;
-      const bin = (redLight[r]! + greenLight[g]! + blueLight[b]!) | 0;
-      luminance[bin < 0 ? 0 : Math.min(bin, last)]!++;
-      count++;
-    }
+  for (let i = from; i < to; i += step) {
+    const r = data[i]!;
+    const g = data[i + 1]!;
+    const b = data[i + 2]!;
+    red[r]!++;
+    green[g]!++;
+    blue[b]!++;
+    const bin = (redLight[r]! + greenLight[g]! + blueLight[b]!) | 0;
+    luminance[bin < 0 ? 0 : Math.min(bin, last)]!++;
+    count++;
   }
-  return { luminance, channels: [red, green, blue], count };
+  histograms.count += count;
 }
 
 /** Whole rows are left out where they can be: what makes a sample of a large frame slow is to fetch its rows. */
@@ -145,7 +178,7 @@ function sampleSteps(width: number, height: number): { rowStep: number; colStep:
   return { rowStep, colStep: Math.max(1, Math.floor(stride / rowStep)) };
 }
 
-function medianOf(luminance: Uint32Array, count: number): { median: number; uncertainty: number } {
+function medianOf(luminance: Int32Array, count: number): { median: number; uncertainty: number } {
   const quantile = (share: number) => {
     const wanted = share * count;
     let before = 0;
@@ -162,7 +195,7 @@ function medianOf(luminance: Uint32Array, count: number): { median: number; unce
   return { median: quantile(0.5), uncertainty: Math.max(uncertainty, 0.5 / fine) };
 }
 
-function coarsen(counts: Uint32Array, total: number): number[] {
+function coarsen(counts: Int32Array, total: number): number[] {
   const shares = new Array<number>(bins).fill(0);
   const scale = bins / (counts.length - 1);
   for (let code = 0; code < counts.length; code++) {
@@ -172,7 +205,7 @@ function coarsen(counts: Uint32Array, total: number): number[] {
 }
 
 /** Bins even in codes, from light's: where each ends is found once, as the way from light to code is slow. */
-function coarsenLight(counts: Uint32Array, total: number): number[] {
+function coarsenLight(counts: Int32Array, total: number): number[] {
   const shares = new Array<number>(bins).fill(0);
   for (let i = 0; i < fine; i++) shares[coarseBin[i]!]! += counts[i]! / total;
   return shares;

@@ -20,15 +20,23 @@ export interface BlockMeans {
 /** More pixels of a block than this make its mean no surer. */
 const enoughPixels = 1500;
 
-/** @param columns, rows of the grid; blocks are whole pixels, what is left over at the right and bottom joins no block */
-export function readBlocks(frame: Frame, columns: number, rows: number): BlockMeans {
+/**
+ * @param columns, rows of the grid; blocks are whole pixels, what is left over at the right and bottom joins no block
+ * @param enough pixels of a block, so that fewer than four times as many are read
+ */
+export function readBlocks(
+  frame: Frame,
+  columns: number,
+  rows: number,
+  enough = enoughPixels,
+): BlockMeans {
   const { data, width, height, maxCode } = frame;
   const [wr, wg, wb] = luminanceWeights(frame);
   const [redLight, greenLight, blueLight] = frame.toLinear;
   const across = Math.floor(width / columns);
   const down = Math.floor(height / rows);
   // Odd steps, so that a sample doesn't fall on the same places of JPEG's blocks again and again.
-  const step = Math.max(1, Math.floor(Math.sqrt((across * down) / enoughPixels)) | 1);
+  const step = Math.max(1, Math.floor(Math.sqrt((across * down) / enough)) | 1);
   const empty = () => new Float64Array(columns * rows);
   const [red, green, blue, luminance, spread] = [empty(), empty(), empty(), empty(), empty()];
   const count = Math.ceil(across / step) * Math.ceil(down / step);

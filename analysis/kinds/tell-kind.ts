@@ -41,15 +41,17 @@ function tellPage(frame: Frame): ToldKind | null {
   return findPage(frame) ? { kind: 'lag', confidence: 0.99 } : null;
 }
 
+/** Pixels of a block for the first look. */
+const firstLook = 40;
+/** How much more than a plain frame a first look may show: its means are noisier. Our choice. */
+const loosely = 5;
+
 /** Dark, flat and grey frames without anything in them; null for all others. Quick, and so surely no target that none is looked for. */
 export function tellPlain(frame: Frame, capture: Capture): ToldKind | null {
+  if (isBusy(frame)) return null;
   const blocks = readBlocks(frame, columns, rows);
   const all = everyBlock(blocks);
-  const codes = all.map((b) => (blocks.red[b]! + blocks.green[b]! + blocks.blue[b]!) / 3);
-  const mean = (255 * codes.reduce((s, v) => s + v, 0)) / codes.length;
-  const sorted = codes.map((v) => 255 * v).sort((a, b) => a - b);
-  const spread =
-    sorted[Math.floor(0.99 * sorted.length)]! - sorted[Math.floor(0.01 * sorted.length)]!;
+  const { mean, spread } = levelOf(blocks, all);
   if (mean < darkCode && spread < darkCode / 2)
     return { kind: 'dark', confidence: between(1 - Math.max(mean, 2 * spread) / darkCode) };
   const evenness = evennessOf(blocks, all);
@@ -62,6 +64,27 @@ export function tellPlain(frame: Frame, capture: Capture): ToldKind | null {
   if (fNumber !== null && fNumber >= smallAperture) return { kind: 'flat', confidence: surely };
   if (bright) return { kind: 'flat', confidence: Math.min(surely, 0.75) };
   return { kind: 'grey', confidence: Math.min(surely, fNumber === null ? 0.65 : 0.85) };
+}
+
+/** A look at few pixels: most pictures are so far from plain that it is enough. */
+function isBusy(frame: Frame): boolean {
+  const blocks = readBlocks(frame, columns, rows, firstLook);
+  const all = everyBlock(blocks);
+  const { mean, spread } = levelOf(blocks, all);
+  if (mean < darkCode * loosely && spread < (darkCode / 2) * loosely) return false;
+  const evenness = evennessOf(blocks, all);
+  return evenness !== null && evenness.roughness > evenRoughness * loosely;
+}
+
+/** Of the blocks' mean codes, of 255: their mean, and the spread of all but 1 % at each end. */
+function levelOf(
+  { red, green, blue }: ReturnType<typeof readBlocks>,
+  all: readonly number[],
+): { mean: number; spread: number } {
+  const codes = Float64Array.from(all, (b) => 85 * (red[b]! + green[b]! + blue[b]!)).sort();
+  const mean = codes.reduce((s, v) => s + v, 0) / codes.length;
+  const at = (share: number) => codes[Math.floor(share * codes.length)]!;
+  return { mean, spread: at(0.99) - at(0.01) };
 }
 
 function tellCard(frame: Frame): ToldKind | null {

@@ -1,5 +1,6 @@
+import { binsPerPixel } from '../edge/bin-samples.ts';
 import { fitProfile, type ProfileFit, responseAt } from '../edge/fit-profile.ts';
-import { binsPerPixel, type EdgeTrace, type Traces } from '../edge/trace-edges.ts';
+import type { EdgeTrace, Traces } from '../edge/trace-edges.ts';
 import type { Frame, Point } from '../image.ts';
 import type { Edge, Metric, Warning } from '../result.ts';
 import type { Registration } from '../target/registration.ts';

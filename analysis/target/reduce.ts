@@ -20,22 +20,31 @@ export function reduceGreen(frame: Frame, longest: number): ReducedFrame {
   const offsets = sampleOffsets(factor);
   const scale = 1 / (offsets.length * offsets.length * frame.maxCode);
   const data = new Float32Array(width * height);
-  const codes = frame.data;
-  const across = offsets.length;
   for (let row = 0; row < height; row++) {
     const line = data.subarray(row * width, (row + 1) * width);
-    for (const offset of offsets) {
-      let start = (row * factor + offset) * frame.width * 3 + 1;
-      for (let col = 0; col < width; col++) {
-        let sum = 0;
-        for (let k = 0; k < across; k++) sum += codes[start + offsets[k]! * 3]!;
-        line[col]! += sum;
-        start += factor * 3;
-      }
-    }
+    for (const offset of offsets)
+      addLine(line, frame.data, (row * factor + offset) * frame.width * 3 + 1, factor * 3, offsets);
     for (let col = 0; col < width; col++) line[col]! *= scale;
   }
   return { width, height, data, factor };
+}
+
+/** By itself, because a function that is called often is compiled as a whole. */
+function addLine(
+  line: Float32Array,
+  codes: Frame['data'],
+  from: number,
+  stride: number,
+  offsets: Int32Array,
+): void {
+  const across = offsets.length;
+  let start = from;
+  for (let col = 0; col < line.length; col++) {
+    let sum = 0;
+    for (let k = 0; k < across; k++) sum += codes[start + offsets[k]! * 3]!;
+    line[col]! += sum;
+    start += stride;
+  }
 }
 
 /** Evenly spread and symmetric about the cell's middle, so that the means don't shift the picture. */
