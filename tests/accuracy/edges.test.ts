@@ -1,6 +1,6 @@
 import { describe } from 'vitest';
 import { testSuite } from './subset.ts';
 
-describe('clean', () => testSuite('clean', 3));
-describe('noisy', () => testSuite('noisy', 2));
-describe('subsampled', () => testSuite('subsampled', 3));
+describe('clean', () => testSuite('clean', 12));
+describe('noisy', () => testSuite('noisy', 4));
+describe('subsampled', () => testSuite('subsampled', 4));

@@ -29,6 +29,8 @@ export interface Row {
   readonly allowed: { readonly median?: number; readonly p95?: number; readonly largest?: number };
   /** Whether the share of truths within ±2 u is judged (90–99 %). */
   readonly stated: boolean;
+  /** Why the allowance is not met yet: the whole run calls the row short, the subset in `npm test` leaves it out. */
+  readonly notMet?: string;
 }
 
 export const rows: readonly Row[] = [
@@ -79,6 +81,7 @@ export const rows: readonly Row[] = [
     unit: '‰',
     allowed: { largest: 0.05 },
     stated: true,
+    notMet: 'JPEG drops faint colour beside an edge: one scene in 40 is 0.051 ‰ off.',
   },
   {
     name: 'fringe scales, 4:2:0',
@@ -87,6 +90,7 @@ export const rows: readonly Row[] = [
     unit: '‰',
     allowed: { largest: 0.05 },
     stated: true,
+    notMet: 'JPEG drops faint halved chroma: scales come out 2 to 3 % small, up to 0.2 ‰ off.',
   },
   {
     name: 'exposure.bias',
