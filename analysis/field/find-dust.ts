@@ -19,6 +19,16 @@ const leastStrength = 6;
 const leastDepth = 0.004;
 /** Rounding leaves contours on a smooth fall of light, whose dips reach this share of a step after filtering. Found by rendering. */
 const contour = 0.65;
+/**
+ * JPEG drops a block's coefficients below half a step, so little noise leaves lone patterns here and there, which the scatter of their
+ * neighbours doesn't show. Dips reach this many steps of a block's mean where a few coincide: 2.7 at most over qualities 75…92, found
+ * by rendering.
+ */
+const lonePattern = 3;
+/** Noise, in steps of a block's mean, above which most coefficients are kept and so scatter like noise: half a coefficient's own step. */
+const kept = 4;
+/** A centre of this deviation spans a block of 8 pixels; over a wider one a lone block's pattern thins out. */
+const blockWidth = 2;
 /** Noise of a pixel, in codes, above which its rounding to whole codes is lost in it. */
 const dithered = 0.5;
 /** Filters at each layer, in pixels of the layer: deviation of the Gaussian centre, box of the surround, about three times as wide. */
@@ -36,11 +46,12 @@ const mostMeasured = 300;
  * @param codeToLight code 0…1 of full scale → relative light, for the depth
  */
 export function findDust(frame: Frame, codeToLight: (code: number) => number): DustSpot[] {
-  const least = leastResponse(frame);
+  const least = leastResponses(frame);
   let layer: Layer | null = levelOut(reduceCodes(frame));
   const peaks: Peak[] = [];
   while (layer && Math.min(layer.width, layer.height) >= 24) {
-    for (const filter of filters) peaks.push(...filterLayer(layer, filter, least));
+    for (const filter of filters)
+      peaks.push(...filterLayer(layer, filter, least(filter.width * layer.factor)));
     layer = halve(layer);
   }
   const spots: DustSpot[] = [];
@@ -69,8 +80,11 @@ function allowForEdge(frame: Frame, { x, y }: Peak, shadow: Shadow): Shadow {
   };
 }
 
-/** Response that rounding alone may give: to whole codes where no noise covers it, and of JPEG's flat blocks. Codes 0…1. */
-function leastResponse(frame: Frame): number {
+/**
+ * Response, codes 0…1, that rounding alone may give a filter whose centre has a deviation of so many image pixels: rounding to whole
+ * codes where no noise covers it, and JPEG's of its blocks.
+ */
+function leastResponses(frame: Frame): (width: number) => number {
   const { data, width, maxCode, blockStep } = frame;
   const scale = maxCode / 255;
   let squares = 0;
@@ -83,8 +97,10 @@ function leastResponse(frame: Frame): number {
     count++;
   }
   const noise = Math.sqrt(squares / Math.max(1, count) / 2);
-  const step = Math.hypot(blockStep?.luma ?? 0, noise < dithered ? scale : 0);
-  return (contour * step) / maxCode;
+  const blocks = blockStep?.luma ?? 0;
+  const contours = contour * Math.hypot(blocks, noise < dithered ? scale : 0);
+  const patterns = noise < kept * blocks ? lonePattern * blocks : 0;
+  return (width) => Math.max(contours, patterns * Math.min(1, blockWidth / width)) / maxCode;
 }
 
 /** Each spot counts by the chance that its noise left it above the threshold. */
