@@ -41,6 +41,6 @@ test('a picture of 30 MB arrives whole', async () => {
 
   const [shot] = (await readRun(caller, runId)).shotList;
   const sha256 = createHash('sha256').update(bytes).digest('hex');
-  expect(shot).toMatchObject({ sha256, bytes: bytes.length, kind: 'scene', state: 'done' });
+  expect(shot).toMatchObject({ sha256, bytes: bytes.length, state: 'done' });
   await caller.dispose();
 });
