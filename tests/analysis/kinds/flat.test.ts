@@ -151,3 +151,26 @@ describe('refusals', () => {
     await expect(measure({ exposureEv: 3, shadingCornerEv: -1 })).rejects.toThrow(MeasurementError);
   });
 });
+
+// A clean frame by construction: nothing is planted, so that nothing may be found. Limit: measurements.md, "none invented".
+test.each([92, 85, 75])(
+  'little noise in a JPEG of quality %i leaves block patterns, which are no dust',
+  async (quality) => {
+    const format = { type: 'jpeg', quality, subsampling: '4:4:4' } as const;
+    const plan = { snrDb: 44, shadingCornerEv: -0.4, lightTiltEv: 0.1, seed: 3, format };
+    expect((await measure(plan)).find('dust.count').value).toBe(0);
+  },
+);
+
+// Truth by construction. Limit: measurements.md, shading within 0.03 EV.
+test('a fall of 2 EV through a steep curve is still an even surface', async () => {
+  const plan = { toneContrast: 1.4, shadingCornerEv: -2, lightTiltEv: 0.2, snrDb: 30, seed: 15 };
+  const greys = [0.03, 0.05, 0.08, 0.12, 0.18, 0.25, 0.34, 0.45, 0.6, 0.75];
+  const tone = createTone(1.4);
+  const lent = greys.map((reflectance) => ({
+    reflectance,
+    code: encodeSrgb(tone.apply(reflectance)),
+  }));
+  const { find, truth } = await measure({ ...plan, format: { type: 'png' } }, lent);
+  expect(Math.abs(find('shading.corner').value - truth.shadingCorner)).toBeLessThan(0.03);
+});
