@@ -91,9 +91,16 @@ test('lanes work on as many jobs at once as they are wide, wake on a new job and
   let atOnce = 0;
   let most = 0;
   const done: string[] = [];
+  let meet = () => {};
+  const met = new Promise<void>((resolve) => {
+    meet = resolve;
+  });
   const handler: Handler = {
     async work(subjectId) {
       most = Math.max(most, ++atOnce);
+      if (atOnce === 2) meet();
+      // The first waits for a second to be in hand beside it, however slow the machine; alone it gives up.
+      await Promise.race([met, new Promise((resolve) => setTimeout(resolve, 5000))]);
       await new Promise((resolve) => setTimeout(resolve, 60));
       atOnce--;
       return async () => {
